@@ -18,9 +18,9 @@ namespace sinewright::app {
 /// An order to change over to another source.
 struct OpenOrder {
     quint64 serial = 0;
-    SourceSpec source;
-    core::MeasureSettings settings;
-    std::shared_ptr<AnalysisLink> link;
+    SourceSpec source{};
+    core::MeasureSettings settings{};
+    std::shared_ptr<AnalysisLink> link{};
 };
 
 /// [dev] Opens, starts, tends and stops the source, and owns the ring and the [dsp] thread that go with it.

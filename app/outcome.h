@@ -17,8 +17,8 @@ enum class ExitStatus {
 /// What a command has to say. The caller writes it out, so that a command can be run in a test.
 struct Outcome {
     ExitStatus status = ExitStatus::Good;
-    std::string output;    ///< for stdout, with its line ends
-    std::string complaint; ///< one line for stderr without its line end; empty when all went well
+    std::string output{};    ///< for stdout, with its line ends
+    std::string complaint{}; ///< one line for stderr without its line end; empty when all went well
 };
 
 /// An outcome that is nothing but a complaint.

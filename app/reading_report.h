@@ -11,10 +11,10 @@ namespace sinewright::app {
 
 /// A reading with where it came from: all that a report of it needs.
 struct MeasuredReading {
-    SourceSpec source;
-    core::SampleRate rate;
-    core::MeasureSettings settings;
-    core::Reading reading;
+    SourceSpec source{};
+    core::SampleRate rate{};
+    core::MeasureSettings settings{};
+    core::Reading reading{};
 };
 
 /// One JSON object, schema "sinewright.reading/1", on one line with its line end.

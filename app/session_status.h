@@ -18,10 +18,10 @@ namespace sinewright::app {
 struct SessionStatus {
     using Condition = ui::BenchState::Condition;
     Condition condition = Condition::Starting;
-    SourceSpec source;
+    SourceSpec source{};
     double rateHz = 0.0; ///< what the source really delivers; 0 until it is open
     int channels = 0;
-    QString message; ///< one line, what is wrong and what to try; empty while all is well
+    QString message{}; ///< one line, what is wrong and what to try; empty while all is well
     quint64 framesLost = 0;
     quint64 serial = 0; ///< which order to open it answers
     friend bool operator==(const SessionStatus&, const SessionStatus&) = default;

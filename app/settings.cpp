@@ -4,6 +4,7 @@
 #include "app/limits.h"
 #include "app/words.h"
 
+#include <QLocale>
 #include <QSettings>
 #include <QStandardPaths>
 

@@ -13,10 +13,10 @@ namespace sinewright::app {
 
 namespace {
 
-constexpr QStringView kDemoWord = u"demo";
-constexpr QStringView kCardWord = u"card";
-constexpr QStringView kCardPrefix = u"card:";
-constexpr QStringView kHostSeparator = u"::";
+constexpr QLatin1StringView kDemoWord{"demo"};
+constexpr QLatin1StringView kCardWord{"card"};
+constexpr QLatin1StringView kCardPrefix{"card:"};
+constexpr QLatin1StringView kHostSeparator{"::"};
 
 /// Two channels are opened where there are two; a higher one is reached by opening that many.
 int channelsToOpen(int wantedChannel)
@@ -54,12 +54,12 @@ QString textFromSource(const SourceSpec& spec)
 {
     switch (spec.kind) {
     case ui::SourceKind::Demo:
-        return kDemoWord.toString();
+        return kDemoWord;
     case ui::SourceKind::Card:
         if (!spec.hostApi.isEmpty()) {
             return kCardPrefix + spec.hostApi + kHostSeparator + spec.name;
         }
-        return spec.name.isEmpty() ? kCardWord.toString() : kCardPrefix + spec.name;
+        return spec.name.isEmpty() ? QString(kCardWord) : QString(kCardPrefix + spec.name);
     case ui::SourceKind::Take:
         break;
     }

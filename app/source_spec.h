@@ -15,8 +15,8 @@ namespace sinewright::app {
 /// A source as a person names it, and what is wanted of it.
 struct SourceSpec {
     ui::SourceKind kind = ui::SourceKind::Demo;
-    QString name;        ///< card: its name or part of it, empty for the default; take: the file; demo: empty
-    QString hostApi;     ///< card: only among this host API's; empty: any
+    QString name{};      ///< card: its name or part of it, empty for the default; take: the file; demo: empty
+    QString hostApi{};   ///< card: only among this host API's; empty: any
     double rateHz = 0.0; ///< 0: the source's own
     int channel = 1;     ///< from 1
     friend bool operator==(const SourceSpec&, const SourceSpec&) = default;
