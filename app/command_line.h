@@ -26,7 +26,7 @@ struct PictureOptions {
     QString file;
     SourceSpec source;
     double afterS = 8.0; ///< [s] of signal
-    QSize size{1280, 800}; ///< [logical pixels] of the picture, caption and all
+    QSize size{1280, 800}; ///< [logical pixels] of the window; the caption comes below it
     ui::ThemeName theme = ui::ThemeName::Paper;
     ui::Page page = ui::Page::Trim;
     int scale = 1;                   ///< 1 or 2

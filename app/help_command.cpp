@@ -34,7 +34,8 @@ Options
 
 With --picture
   --after S          how much signal to show, in seconds (default 8)
-  --size WxH         size of the picture (default 1280x800)
+  --size WxH         size of the window (default 1280x800); a caption is set
+                     below it
   --scale 1|2        pixels per point of the picture (default 1)
   --theme paper|dusk
   --page hook-up|trim|warm-up|network|record   (default trim)

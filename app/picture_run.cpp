@@ -4,6 +4,8 @@
 #include "app/picture.h"
 #include "app/processor_time.h"
 #include "app/reading_report.h"
+#include "app/words.h"
+#include "ui/reading_choice.h"
 
 #include <QDateTime>
 #include <QGuiApplication>
@@ -25,11 +27,16 @@ constexpr std::chrono::milliseconds kLookEvery{50};
 /// The load is counted from here on: fonts, plans and first layouts are behind [s of signal].
 constexpr double kWarmS = 2.0;
 
-/// Of pictureCaption().
-constexpr int kCaptionLines = 2;
-
 /// A source that gives no frame for so long has failed [s].
 constexpr double kPatienceS = 15.0;
+
+/// "Trim" of the page that the command line calls "trim".
+QString pageTitle(ui::Page page)
+{
+    QString word = QString::fromLatin1(wordOf(kPageWords, page));
+    word[0] = word[0].toUpper();
+    return word;
+}
 
 } // namespace
 
@@ -51,7 +58,7 @@ Outcome PictureRun::run()
 {
     turnTrimmer(0.0);
     m_wiring.start(m_options.source);
-    m_window.resize(m_options.size - QSize(0, captionHeight(kCaptionLines)));
+    m_window.resize(m_options.size);
     m_window.show();
     m_startedS = steadySeconds();
     m_looking.start(kLookEvery);
@@ -124,15 +131,11 @@ Outcome PictureRun::picture()
     }
     // The display timer has had the frame by now or gets it in the next turn.
     QGuiApplication::processEvents();
-    const PictureFacts facts{.when = QDateTime::currentDateTime(),
-                             .session = status,
-                             .settings = m_settings.values().measure,
-                             .frame = m_window.shownFrame()};
-    const QImage image = pictureOf(m_window, pictureCaption(facts), m_options.scale);
+    const QImage image = m_wiring.picture(m_window.sheet(), pageTitle(m_options.page), QDateTime::currentDateTime());
     if (const auto written = writePicture(image, m_options.file); !written) {
         return complaint(ExitStatus::NotWritten, written.error().detail);
     }
-    const core::Reading& reading = frame->full ? *frame->full : frame->quick;
+    const core::Reading& reading = *ui::shownReading(*frame).reading;
     Outcome outcome;
     outcome.output = readingAsLine(reading) + '\n';
     if (m_options.reportsLoad) {

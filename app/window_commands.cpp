@@ -43,6 +43,7 @@ Outcome runWindow(const WindowOptions& options, int& argc, char** argv)
     wiring.start(options.source.value_or(settings.values().source));
     window.show();
     QApplication::exec();
+    settings.setView(window.viewSettings());
     return {};
 }
 

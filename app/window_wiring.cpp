@@ -2,8 +2,8 @@
 #include "app/window_wiring.h"
 
 #include "app/picture.h"
+#include "ui/picture.h"
 
-#include <QDateTime>
 #include <QFileDialog>
 #include <QFileInfo>
 #include <QStandardPaths>
@@ -148,7 +148,16 @@ void WindowWiring::showStatus()
 
 void WindowWiring::showSources()
 {
-    m_window.setSources(sourceChoices(m_cards, m_session.status().source));
+    const QList<ui::SourceChoice> choices = sourceChoices(m_cards, m_session.status().source);
+    QStringList ids;
+    for (const ui::SourceChoice& choice : choices) {
+        ids.append(choice.id);
+    }
+    // The picker may be open just now: it is left alone as long as nothing has changed.
+    if (ids != m_shownIds) {
+        m_shownIds = ids;
+        m_window.setSources(choices);
+    }
 }
 
 void WindowWiring::noteCards(const std::vector<audio::CardInfo>& cards)
@@ -172,21 +181,26 @@ QString WindowWiring::pictureFolder()
     return chosen;
 }
 
+QImage WindowWiring::picture(QWidget* subject, const QString& title, const QDateTime& when) const
+{
+    const auto frame = m_window.shownFrame();
+    const ui::BenchState state = benchState(m_session.status(), m_session.trimmerOhm());
+    return ui::composePicture(subject,
+                              ui::captionFor(title, frame.get(), state, m_settings.values().measure, when),
+                              m_window.viewSettings().pictureScale);
+}
+
 void WindowWiring::takePicture(const ui::PictureRequest& request)
 {
-    const PictureFacts facts{.when = QDateTime::currentDateTime(),
-                             .session = m_session.status(),
-                             .settings = m_settings.values().measure,
-                             .frame = m_window.shownFrame()};
+    const QDateTime when = QDateTime::currentDateTime();
     // Taken before a folder is asked for: the bench does not wait.
-    const QImage image =
-        pictureOf(*request.subject, pictureCaption(facts), m_window.viewSettings().pictureScale);
+    const QImage image = picture(request.subject, request.title, when);
     const QString folder = pictureFolder();
     if (folder.isEmpty()) {
         m_window.showNotice(tr("No folder chosen, no picture saved."));
         return;
     }
-    const auto path = savePicture(image, folder, facts.when, request.subjectName);
+    const auto path = savePicture(image, folder, when, request.subjectName);
     m_window.showNotice(path ? tr("Picture saved as %1").arg(*path) : QString::fromStdString(path.error().detail));
 }
 

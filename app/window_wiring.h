@@ -7,8 +7,11 @@
 #include "ui/bench_state.h"
 #include "ui/main_window.h"
 
+#include <QDateTime>
+#include <QImage>
 #include <QList>
 #include <QObject>
+#include <QStringList>
 
 #include <vector>
 
@@ -29,6 +32,9 @@ public:
     /// Turns the virtual trimmer, and shows where it stands.
     void turnTrimmer(double ohm);
 
+    /// A part of the window as it stands, with its caption.
+    [[nodiscard]] QImage picture(QWidget* subject, const QString& title, const QDateTime& when) const;
+
 private:
     void openChoice(const ui::SourceChoice& choice);
     void open(const SourceSpec& spec);
@@ -38,10 +44,12 @@ private:
     void takePicture(const ui::PictureRequest& request);
     [[nodiscard]] QString pictureFolder();
 
+
     ui::MainWindow& m_window;
     BenchSession& m_session;
     Settings& m_settings;
     std::vector<audio::CardInfo> m_cards; ///< as last listed
+    QStringList m_shownIds;               ///< of the picker's entries
 };
 
 /// What the window calls this source.
