@@ -27,7 +27,7 @@ namespace sinewright::core {
 /// Other parts: make a new oscillator.
 ///
 /// @thread    one; not synchronised.   @realtime  run() neither allocates nor locks.
-/// @accuracy  at 192 kHz against a run in steps eight times finer: level 3e-4 above 0.9 V, THD 2.5 % relative
+/// @accuracy  at 192 kHz against a run in steps eight times finer: level 5e-4 above 0.9 V, THD 2.5 % relative
 ///            (tst_lamp_oscillator); nearer to the threshold the level is the more sensitive, 0.5 % at 0.33 V.
 /// @source    Exponential time differencing: Cox and Matthews 2002, from memory.
 class LampOscillator final
