@@ -8,16 +8,17 @@
 
 #include "core/measure/frame.h"
 #include "ui/bench_state.h"
+#include "ui/theme.h"
 
 namespace sinewright::ui {
 
 enum class Page { HookUp, Trim, WarmUp, Network, Record };
-enum class ThemeName { Paper, Dusk };
 
 /// A picture the user asked for: what, how large, and the figures to set under it.
 struct PictureRequest {
     QWidget* subject = nullptr; ///< the page, or the plot under the pointer
     QString subjectName;        ///< plain word for the file name: "trim", "spectrum", ...
+    QString title;              ///< the same for the caption, in the user's language
 };
 
 /// What of the window is remembered between runs.
@@ -48,6 +49,9 @@ public:
     /// The frame that is shown now: the frozen one while frozen; null at the start.
     [[nodiscard]] std::shared_ptr<const core::Frame> shownFrame() const;
 
+    /// The whole page area, for a picture of the window that nobody asked for with a key.
+    [[nodiscard]] QWidget* sheet() const;
+
     /// One sentence in the bottom line, for ten seconds: "Picture saved as ...".
     void showNotice(const QString& sentence);
 
@@ -59,6 +63,9 @@ signals:
     void bestResetWanted();
     void pictureWanted(const sinewright::ui::PictureRequest& request);
     void viewSettingsChanged();
+
+protected:
+    void showEvent(QShowEvent* event) override;
 
 private:
     class Impl;

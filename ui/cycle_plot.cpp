@@ -1,0 +1,65 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/cycle_plot.h"
+
+#include "ui/figure_text.h"
+#include "ui/tickers.h"
+
+namespace sinewright::ui {
+
+using namespace Qt::StringLiterals;
+
+namespace {
+
+constexpr double kTurnDeg = 360.0;
+constexpr double kQuarterDeg = 90.0;
+constexpr double kCycleEnd = 1.15; ///< the averaged cycle keeps a little clear of the axes
+
+} // namespace
+
+CyclePlot::CyclePlot(QWidget* parent)
+    : Plot(u"residual"_s, tr("Cycle residual, %"), parent), m_cycle(nullptr), m_residual(nullptr)
+{
+    xAxis->setRange(0.0, kTurnDeg);
+    auto degrees = QSharedPointer<QCPAxisTickerText>::create();
+    for (double at = 0.0; at <= kTurnDeg; at += kQuarterDeg) {
+        degrees->addTick(at, numberText(at, 0) + u'°');
+    }
+    xAxis->setTicker(degrees);
+    yAxis->setTicker(QSharedPointer<NumberTicker>::create(0.0, 4));
+    yAxis2->setRange(-kCycleEnd, kCycleEnd);
+    m_cycle = addGraph(xAxis, yAxis2);
+    m_residual = addGraph(xAxis, yAxis);
+    for (QCPGraph* graph : {m_cycle, m_residual}) {
+        graph->setAdaptiveSampling(false);
+    }
+    restyle();
+    show();
+}
+
+void CyclePlot::setFrame(std::shared_ptr<const core::Frame> frame)
+{
+    m_model.setFrame(std::move(frame));
+    show();
+    draw();
+}
+
+void CyclePlot::show()
+{
+    fill(*m_cycle, m_model.cycle());
+    fill(*m_residual, m_model.residual());
+    yAxis->setRange(-m_model.residualEnd(), m_model.residualEnd());
+    setNote(m_model.isEmpty() ? tr("No tone, no cycle to look at.") : QString());
+    if (!m_model.isEmpty()) {
+        describe(tr("Cycle residual over one cycle, on an axis of plus and minus %1 percent of the fundamental.")
+                     .arg(m_model.residualEnd()));
+    }
+}
+
+void CyclePlot::restyle()
+{
+    m_cycle->setPen(QPen(colours().hairline, 3.0));
+    m_residual->setPen(QPen(colours().copper, 1.5));
+    yAxis->grid()->setZeroLinePen(QPen(colours().hairline, 1.0));
+}
+
+} // namespace sinewright::ui

@@ -1,0 +1,17 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#pragma once
+
+#include <QDialog>
+
+#include "ui/actions.h"
+
+namespace sinewright::ui {
+
+/// All keys, made from the actions themselves.
+class KeysDialog final : public QDialog {
+    Q_OBJECT
+public:
+    KeysDialog(const QList<ActionGroup>& groups, QWidget* parent);
+};
+
+} // namespace sinewright::ui

@@ -1,0 +1,118 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/spectrum_plot.h"
+
+#include <algorithm>
+#include <cmath>
+#include <limits>
+
+#include "ui/figure_text.h"
+#include "ui/tickers.h"
+
+namespace sinewright::ui {
+
+using namespace Qt::StringLiterals;
+
+namespace {
+
+constexpr double kStepDb = 20.0;
+constexpr double kRoomiestDecades = 4.2;
+constexpr double kStemWidth = 2.0;
+constexpr double kKilo = 1000.0;
+
+QString frequencyLabel(double hz)
+{
+    return hz >= kKilo ? numberText(hz / kKilo, 0) + u'k' : numberText(hz, 0);
+}
+
+} // namespace
+
+SpectrumPlot::SpectrumPlot(QWidget* parent)
+    : Plot(u"spectrum"_s, tr("Spectrum"), parent), m_lowest(nullptr), m_highest(nullptr)
+{
+    xAxis->setScaleType(QCPAxis::stLogarithmic);
+    xAxis->setTicker(QSharedPointer<StepTicker>::create(frequencyLabel, kRoomiestDecades));
+    yAxis->setTicker(QSharedPointer<NumberTicker>::create(kStepDb));
+    m_lowest = addGraph();
+    m_highest = addGraph();
+    m_highest->setChannelFillGraph(m_lowest);
+    for (QCPGraph* graph : {m_lowest, m_highest}) {
+        graph->setAdaptiveSampling(false); // the model made one point a column
+        graph->setAntialiased(false);
+    }
+    new Overprint(this, u"main"_s, [this](QCPPainter& painter) { paintStems(painter); });
+    restyle();
+    show();
+}
+
+void SpectrumPlot::setFrame(std::shared_ptr<const core::Frame> frame)
+{
+    m_model.setColumns(columns());
+    m_model.setFrame(std::move(frame));
+    show();
+    draw();
+}
+
+void SpectrumPlot::setUnit(LevelUnit unit)
+{
+    m_model.setUnit(unit);
+    show();
+    draw();
+}
+
+void SpectrumPlot::show()
+{
+    fill(*m_lowest, m_model.lowest());
+    fill(*m_highest, m_model.highest());
+    xAxis->setRange(m_model.frequencyRange().low, m_model.frequencyRange().high);
+    yAxis->setRange(m_model.levelRange().low, m_model.levelRange().high);
+    setTitle(m_model.shownUnit() == LevelUnit::Dbc ? tr("Spectrum, dBc") : tr("Spectrum, dBFS"));
+    setNote(m_model.isEmpty() ? tr("The spectrum appears with the first samples.") : QString());
+    if (m_model.stems().size() > 1) {
+        const auto strongest =
+            std::max_element(m_model.stems().begin() + 1, m_model.stems().end(),
+                             [](const Stem& a, const Stem& b) { return a.levelDb < b.levelDb; });
+        describe(tr("Spectrum. Fundamental %1; strongest harmonic: number %2.")
+                     .arg(roundFrequencyText(m_model.stems().front().frequencyHz))
+                     .arg(strongest->order));
+    }
+}
+
+void SpectrumPlot::restyle()
+{
+    m_lowest->setPen(Qt::NoPen);
+    m_highest->setPen(QPen(colours().inkSoft, 1.0));
+    m_highest->setBrush(colours().wash);
+}
+
+void SpectrumPlot::resizeEvent(QResizeEvent* event)
+{
+    Plot::resizeEvent(event);
+    m_model.setColumns(columns());
+    show();
+}
+
+void SpectrumPlot::paintStems(QCPPainter& painter) const
+{
+    const QRect inside = axisRect()->rect();
+    painter.setFont(figureFont(typeSize()));
+    const QFontMetricsF metrics(painter.font());
+    double freeFrom = -std::numeric_limits<double>::infinity(); // where the next number finds room
+    for (const Stem& stem : m_model.stems()) {
+        const double x = xAxis->coordToPixel(stem.frequencyHz);
+        const double y = std::max<double>(yAxis->coordToPixel(stem.levelDb), inside.top());
+        if (x > inside.right() || y > inside.bottom()) {
+            continue;
+        }
+        const QColor colour = stem.order == 1 ? colours().ink : colours().slate;
+        painter.setPen(QPen(colour, kStemWidth, stem.inBand ? Qt::SolidLine : Qt::DotLine, Qt::FlatCap));
+        painter.drawLine(QPointF(x, inside.bottom()), QPointF(x, y));
+        const QString number = QString::number(stem.order);
+        const double width = metrics.horizontalAdvance(number);
+        if (x - width / 2.0 >= freeFrom) {
+            painter.drawText(QPointF(x - width / 2.0, y - 3.0), number);
+            freeFrom = x + width / 2.0 + 2.0;
+        }
+    }
+}
+
+} // namespace sinewright::ui

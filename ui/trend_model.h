@@ -1,0 +1,58 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#pragma once
+
+#include <memory>
+#include <optional>
+#include <vector>
+
+#include <QObject>
+#include <QPointF>
+
+#include "core/measure/frame.h"
+#include "ui/range_choice.h"
+
+namespace sinewright::ui {
+
+/// The trim trend as it is drawn: extremes per pixel column, time counted back from now, and the ranges.
+class TrendModel final : public QObject {
+    Q_OBJECT
+public:
+    /// Where the best so far lies. Older than the trend's span is well possible.
+    struct Best {
+        double agoS = 0.0; ///< [s] >= 0
+        double percent = 0.0;
+    };
+
+    explicit TrendModel(QObject* parent = nullptr);
+
+    void setColumns(int columns);
+    void setFrame(std::shared_ptr<const core::Frame> frame);
+
+    [[nodiscard]] bool isEmpty() const { return m_thd.empty(); }
+    /// x [s] -span .. 0, y [%]; a NaN y parts the line: no figure there, or samples were lost.
+    [[nodiscard]] const std::vector<QPointF>& thd() const { return m_thd; }
+    [[nodiscard]] const std::vector<QPointF>& thdn() const { return m_thdn; }
+    /// y [dBFS]
+    [[nodiscard]] const std::vector<QPointF>& level() const { return m_level; }
+    [[nodiscard]] const std::optional<Best>& best() const { return m_best; }
+    [[nodiscard]] AxisRange percentRange() const { return m_percentRange; }
+    [[nodiscard]] AxisRange levelRange() const { return m_levelRange; }
+
+signals:
+    void changed();
+
+private:
+    void rebuild();
+    void chooseRanges();
+
+    int m_columns = 0;
+    std::shared_ptr<const core::Frame> m_frame;
+    std::vector<QPointF> m_thd;
+    std::vector<QPointF> m_thdn;
+    std::vector<QPointF> m_level;
+    std::optional<Best> m_best;
+    AxisRange m_percentRange{0.01, 10.0};
+    AxisRange m_levelRange{-20.0, 0.0};
+};
+
+} // namespace sinewright::ui

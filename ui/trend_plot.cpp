@@ -1,0 +1,149 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/trend_plot.h"
+
+#include <algorithm>
+#include <cmath>
+
+#include "ui/figure_text.h"
+#include "ui/tickers.h"
+
+namespace sinewright::ui {
+
+using namespace Qt::StringLiterals;
+
+namespace {
+
+constexpr int kRightMargin = 40;
+constexpr double kRoomiestDecades = 3.0;
+constexpr double kNowRadius = 4.0;
+constexpr double kBestRadius = 5.0;
+constexpr double kMinuteS = 60.0;
+
+QString percentLabel(double percent)
+{
+    const int decimals = std::max(0, -static_cast<int>(std::floor(std::log10(percent) + 1e-9)));
+    return numberText(percent, decimals);
+}
+
+QString timeLabel(double seconds)
+{
+    return seconds == 0.0 ? TrendPlot::tr("now")
+                          //: minutes before now, on the time axis
+                          : TrendPlot::tr("%1 min").arg(numberText(seconds / kMinuteS, 0));
+}
+
+} // namespace
+
+TrendPlot::TrendPlot(QWidget* parent)
+    : Plot(u"trend"_s, tr("Trim trend"), parent)
+    , m_thd(nullptr)
+    , m_thdn(nullptr)
+    , m_level(nullptr)
+{
+    setSideMargins(40, kRightMargin);
+    yAxis2->setVisible(true);
+    yAxis->setScaleType(QCPAxis::stLogarithmic);
+    yAxis->setTicker(QSharedPointer<StepTicker>::create(percentLabel, kRoomiestDecades));
+    yAxis2->setTicker(QSharedPointer<NumberTicker>::create(0.0, 4));
+    yAxis2->grid()->setVisible(false);
+    auto time = QSharedPointer<QCPAxisTickerText>::create();
+    for (double at = -core::Trend::kSpanS; at <= 0.0; at += kMinuteS) {
+        time->addTick(at, timeLabel(at));
+    }
+    xAxis->setTicker(time);
+    xAxis->setRange(-core::Trend::kSpanS, 0.0);
+
+    m_level = addGraph(xAxis, yAxis2);
+    m_thdn = addGraph(xAxis, yAxis);
+    m_thd = addGraph(xAxis, yAxis);
+    for (QCPGraph* graph : {m_level, m_thdn, m_thd}) {
+        graph->setAdaptiveSampling(false); // the model made one pair of points a column
+    }
+    new Overprint(this, u"main"_s, [this](QCPPainter& painter) {
+        paintBest(painter);
+        paintNow(painter);
+    });
+    restyle();
+    show();
+}
+
+void TrendPlot::setFrame(std::shared_ptr<const core::Frame> frame)
+{
+    m_model.setColumns(columns());
+    m_model.setFrame(std::move(frame));
+    show();
+    draw();
+}
+
+void TrendPlot::show()
+{
+    fill(*m_thd, m_model.thd());
+    fill(*m_thdn, m_model.thdn());
+    fill(*m_level, m_model.level());
+    const AxisRange percent = m_model.percentRange();
+    yAxis->setRange(percent.low, percent.high);
+    yAxis2->setRange(m_model.levelRange().low, m_model.levelRange().high);
+    setNote(m_model.isEmpty() ? tr("The trend of the last three minutes grows here as readings come in.") : QString());
+    if (m_model.best()) {
+        describe(tr("Trim trend of the last three minutes. Best so far %1, set %n second(s) ago.", nullptr,
+                    static_cast<int>(m_model.best()->agoS))
+                     .arg(joined(percentFigure(m_model.best()->percent / 100.0))));
+    }
+}
+
+void TrendPlot::restyle()
+{
+    const Theme& t = colours();
+    m_thd->setPen(QPen(t.copper, 2.0, Qt::SolidLine, Qt::RoundCap, Qt::RoundJoin));
+    m_thdn->setPen(QPen(t.ink, 1.0));
+    QPen level(t.slate, 1.2);
+    level.setDashPattern({1.5, 2.5});
+    m_level->setPen(level);
+    QPen best(t.verdigris, 1.2);
+    best.setDashPattern({8.0, 3.0});
+    setKeys({{tr("THD %"), m_thd->pen()},
+             {tr("THD+N %"), m_thdn->pen()},
+             {tr("level dBFS, right"), level},
+             {tr("best so far"), best}});
+}
+
+void TrendPlot::resizeEvent(QResizeEvent* event)
+{
+    Plot::resizeEvent(event);
+    m_model.setColumns(columns());
+}
+
+void TrendPlot::paintBest(QCPPainter& painter) const
+{
+    if (!m_model.best()) {
+        return;
+    }
+    const double y = std::round(yAxis->coordToPixel(m_model.best()->percent)) + 0.5;
+    const QRect inside = axisRect()->rect();
+    QPen rule(colours().verdigris, 1.2);
+    rule.setDashPattern({8.0, 3.0});
+    painter.setPen(rule);
+    painter.drawLine(QPointF(inside.left(), y), QPointF(inside.right(), y));
+    if (m_model.best()->agoS <= core::Trend::kSpanS) {
+        const double x = xAxis->coordToPixel(-m_model.best()->agoS);
+        painter.setPen(QPen(colours().page, 1.5));
+        painter.setBrush(colours().verdigris);
+        painter.drawPolygon(QPolygonF({QPointF(x - kBestRadius, y), QPointF(x, y - kBestRadius),
+                                       QPointF(x + kBestRadius, y), QPointF(x, y + kBestRadius)}));
+        painter.setBrush(Qt::NoBrush);
+    }
+}
+
+void TrendPlot::paintNow(QCPPainter& painter) const
+{
+    if (m_model.isEmpty() || std::isnan(m_model.thd().back().y())) {
+        return;
+    }
+    const QPointF last = m_model.thd().back();
+    painter.setPen(QPen(colours().page, 1.5));
+    painter.setBrush(colours().copper);
+    painter.drawEllipse(QPointF(xAxis->coordToPixel(last.x()), yAxis->coordToPixel(last.y())), kNowRadius, kNowRadius);
+    painter.setBrush(Qt::NoBrush);
+}
+
+} // namespace sinewright::ui
