@@ -24,7 +24,7 @@ SOURCE is one of
   card               the default input of the audio interface
   card:NAME          another input by its name or a part of it
   card:HOST::NAME    the same, only among the inputs of one host API
-  FILE               a WAV, FLAC, AIFF or CAF file; write ./demo for a file "demo"
+  FILE               a WAV, FLAC, AIFF or CAF file (./demo for one called demo)
 
 Options
   --rate HZ          sample rate; a card's own unless given, 96000 for the demo
