@@ -147,7 +147,7 @@ private:
 
     std::future<core::Result<void>> beginStarting()
     {
-        m_stream->tap().open(*m_ring, m_format.rate, m_lastHeard);
+        m_stream->tap().open(*m_ring, m_format, m_lastHeard);
         return askDeviceThread([stream = m_stream] { return stream->start(); });
     }
 

@@ -67,18 +67,22 @@ void FiguresColumn::rebuild()
 
     FigureText level = reading.levelVrms ? voltFigure(reading.levelVrms) : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s);
     const QString levelUnder = reading.levelVrms ? joined(decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)) : QString();
-    const auto best = m_frame && m_frame->trend ? m_frame->trend->best : std::nullopt;
-    const QString bestUnder =
-        best ? tr("%1, at %2")
-                   .arg(ageText(m_frame->timeS - best->timeS),
-                        joined(best->levelVrms ? voltFigure(best->levelVrms) : decibelFigure(best->levelDbfs, 2, u"dBFS"_s)))
-             : QString();
+    const core::BestReading* best = m_frame && m_frame->trend && m_frame->trend->best ? &*m_frame->trend->best : nullptr;
+    QString bestUnder;
+    std::optional<double> bestThd;
+    if (best != nullptr) {
+        bestThd = best->thdRatio;
+        bestUnder = tr("%1, at %2")
+                        .arg(ageText(m_frame->timeS - best->timeS),
+                             joined(best->levelVrms ? voltFigure(best->levelVrms)
+                                                    : decibelFigure(best->levelDbfs, 2, u"dBFS"_s)));
+    }
     m_blocks = {
         {tr("THD"), kind, percentFigure(reading.thdRatio, digits), joined(ratioDecibelFigure(reading.thdRatio, 1, u"dB"_s)), false},
         {tr("THD+N"), {}, percentFigure(reading.thdnRatio, digits), joined(ratioDecibelFigure(reading.thdnRatio, 1, u"dB"_s)), false},
         {tr("Frequency"), {}, frequencyFigure(reading.frequencyHz, reading.frequencyStdHz), {}, false},
         {tr("Level"), {}, level, levelUnder, false},
-        {tr("Best so far"), {}, percentFigure(best ? std::optional(best->thdRatio) : std::nullopt), bestUnder, true},
+        {tr("Best so far"), {}, percentFigure(bestThd), bestUnder, true},
     };
     m_lines = {
         {tr("SINAD"), decibelFigure(reading.sinadDb, 1, u"dB"_s)},
