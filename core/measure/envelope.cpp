@@ -141,9 +141,14 @@ void Envelope::fitPolynomial(const BlockGrid& grid, std::span<const Complex> blo
     const Eigen::Map<const Eigen::VectorXd> column(basis.data(), size);
     for (std::size_t block = 0; block < grid.blocks; ++block) {
         const double tau = 2.0 * grid.centroidOf(block) / static_cast<double>(grid.samples);
-        const Complex turned =
-            blockPhasors[block] * std::polar(1.0, -(m_phase + tau * (m_turn + tau * m_bend)));
         const auto weight = static_cast<double>(grid.lengthOf(block));
+        // A phasor that turns within its block is seen shorter than it is, by sin(x) / x, and one
+        // whose turning changes is seen ahead by the mean of its parabola.
+        const double share = weight / static_cast<double>(grid.samples);
+        const double halfTurn = (m_turn + 2.0 * tau * m_bend) * share;
+        const double shrink = std::abs(halfTurn) < 1e-4 ? 1.0 : std::sin(halfTurn) / halfTurn;
+        const double phase = m_phase + tau * (m_turn + tau * m_bend) + m_bend * share * share / 3.0;
+        const Complex turned = blockPhasors[block] * std::polar(1.0, -phase) / shrink;
         legendre(tau, basis);
         normal += weight * column * column.transpose();
         right.col(0) += weight * turned.real() * column;

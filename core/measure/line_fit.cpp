@@ -242,12 +242,13 @@ private:
 
 } // namespace
 
-StretchTransform::StretchTransform(std::span<const Complex> transform,
+StretchTransform::StretchTransform(const RealFourier& transform,
                                    const CosineWindow& window,
                                    std::size_t samples)
-    : m_transform(transform)
+    : m_transform(transform.output())
+    , m_powers(transform.powers())
     , m_kernel(window, samples)
-    , m_binsPerIndex(static_cast<double>(samples) / static_cast<double>(2 * (transform.size() - 1)))
+    , m_binsPerIndex(static_cast<double>(samples) / static_cast<double>(transform.count()))
     , m_lobeBins(static_cast<double>(window.terms.size()))
 {}
 

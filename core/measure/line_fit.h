@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "core/signal/fourier.h"
 #include "core/signal/window.h"
 
 #include <complex>
@@ -17,9 +18,7 @@ class StretchTransform final
 {
 public:
     /// @param transform  of the windowed samples, zero-padded to an even length; must outlive this object.
-    StretchTransform(std::span<const std::complex<double>> transform,
-                     const CosineWindow& window,
-                     std::size_t samples);
+    StretchTransform(const RealFourier& transform, const CosineWindow& window, std::size_t samples);
 
     [[nodiscard]] std::size_t samples() const { return m_kernel.count(); }
     [[nodiscard]] std::size_t size() const { return m_transform.size(); }
@@ -30,11 +29,12 @@ public:
     [[nodiscard]] double binsPerIndex() const { return m_binsPerIndex; }
     [[nodiscard]] const WindowTransform& kernel() const { return m_kernel; }
     [[nodiscard]] double lobeBins() const { return m_lobeBins; } ///< half width of the main lobe
-    [[nodiscard]] double power(std::size_t index) const { return std::norm(m_transform[index]); }
+    [[nodiscard]] std::span<const double> powers() const { return m_powers; }
     [[nodiscard]] std::complex<double> value(std::size_t index) const;
 
 private:
     std::span<const std::complex<double>> m_transform;
+    std::span<const double> m_powers;
     WindowTransform m_kernel;
     double m_binsPerIndex;
     double m_lobeBins;

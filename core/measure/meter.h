@@ -8,8 +8,11 @@
 #include <cstddef>
 #include <memory>
 #include <span>
+#include <vector>
 
 namespace sinewright::core {
+
+class StretchWorkspace;
 
 /// A reading and, when asked for, the cycle that goes with it.
 struct Measurement
@@ -38,10 +41,9 @@ public:
                                       bool withCycle = false);
 
 private:
-    struct Workspace;
-    [[nodiscard]] Workspace& workspaceFor(std::size_t samples);
+    [[nodiscard]] StretchWorkspace& workspaceFor(std::size_t samples);
 
-    std::vector<std::unique_ptr<Workspace>> m_workspaces; ///< the one used last stands last
+    std::vector<std::unique_ptr<StretchWorkspace>> m_workspaces; ///< the one used last stands last
 };
 
 } // namespace sinewright::core

@@ -8,6 +8,8 @@
 #include <cstdint>
 #include <numbers>
 
+#include <Eigen/Core>
+
 namespace sinewright::core {
 
 namespace {
@@ -33,16 +35,21 @@ double quantisingStep(std::span<const double> samples)
     return bits == 0 ? 0.0 : std::ldexp(1.0, std::countr_zero(bits) - kFinestBits);
 }
 
-std::size_t longestRun(std::span<const double> samples, auto belongs)
+/// Length of the run of samples at or beyond a bound, from one whose sample has just been seen.
+class RunCounter
 {
-    std::size_t longest = 0;
-    std::size_t run = 0;
-    for (const double x : samples) {
-        run = belongs(x) ? run + 1 : 0;
-        longest = std::max(longest, run);
+public:
+    void see(bool belongs)
+    {
+        m_run = belongs ? m_run + 1 : 0;
+        m_longest = std::max(m_longest, m_run);
     }
-    return longest;
-}
+    [[nodiscard]] std::size_t longest() const { return m_longest; }
+
+private:
+    std::size_t m_run = 0;
+    std::size_t m_longest = 0;
+};
 
 } // namespace
 
@@ -50,27 +57,35 @@ SampleStatistics sampleStatistics(std::span<const double> samples)
 {
     assert(!samples.empty());
     SampleStatistics statistics;
-    double sum = 0.0;
-    double top = samples[0];
-    double bottom = samples[0];
-    for (const double x : samples) {
-        sum += x;
-        top = std::max(top, x);
-        bottom = std::min(bottom, x);
-    }
-    statistics.mean = sum / static_cast<double>(samples.size());
+    const Eigen::Map<const Eigen::ArrayXd> all(samples.data(),
+                                               static_cast<Eigen::Index>(samples.size()));
+    statistics.mean = all.mean();
+    const double top = all.maxCoeff();
+    const double bottom = all.minCoeff();
     statistics.peak = std::max(std::abs(top), std::abs(bottom));
     statistics.step = quantisingStep(samples);
     // An integer converter's highest code lies one step below full scale.
     const double step = std::min(statistics.step, kCoarsestStep);
     const double fullScale =
         step > 0.0 ? 1.0 - 1.5 * step : 1.0 - std::ldexp(1.0, -kFinestBits - 1);
-    if (statistics.peak >= fullScale) {
-        statistics.longestAtFullScale =
-            longestRun(samples, [fullScale](double x) { return std::abs(x) >= fullScale; });
+    const double high = std::min(top, fullScale);
+    const double low = std::max(bottom, -fullScale);
+    RunCounter atTop;
+    RunCounter atBottom;
+    RunCounter atFullScale;
+    bool isRunning = false;
+    for (const double x : samples) {
+        const bool isExtreme = x >= high || x <= low;
+        if (isExtreme || isRunning) {
+            atTop.see(x == top);
+            atBottom.see(x == bottom);
+            atFullScale.see(std::abs(x) >= fullScale);
+        }
+        isRunning = isExtreme;
     }
-    statistics.longestAtTop = longestRun(samples, [top](double x) { return x == top; });
-    statistics.longestAtBottom = longestRun(samples, [bottom](double x) { return x == bottom; });
+    statistics.longestAtTop = atTop.longest();
+    statistics.longestAtBottom = atBottom.longest();
+    statistics.longestAtFullScale = atFullScale.longest();
     return statistics;
 }
 

@@ -7,6 +7,8 @@
 #include <cmath>
 #include <numbers>
 
+#include <Eigen/Core>
+
 namespace sinewright::core {
 
 namespace {
@@ -30,27 +32,44 @@ double median(std::vector<double>& values)
 
 } // namespace
 
-std::vector<double> taperSamples(std::size_t count)
+std::vector<double> taperEdge(std::size_t samples)
 {
-    std::vector<double> taper(count, 1.0);
-    const auto width = static_cast<std::size_t>(static_cast<double>(count) * kTaperShare);
-    for (std::size_t n = 0; n < width; ++n) {
+    std::vector<double> edge(static_cast<std::size_t>(static_cast<double>(samples) * kTaperShare));
+    for (std::size_t n = 0; n < edge.size(); ++n) {
         const double s =
-            std::sin(kPi / 2.0 * (static_cast<double>(n) + 0.5) / static_cast<double>(width));
-        taper[n] = taper[count - 1 - n] = s * s;
+            std::sin(kPi / 2.0 * (static_cast<double>(n) + 0.5) / static_cast<double>(edge.size()));
+        edge[n] = s * s;
     }
-    return taper;
+    return edge;
 }
 
-ResidualSpectrum::ResidualSpectrum(std::span<const std::complex<double>> transform,
+double taperPower(std::span<const double> edge, std::size_t samples)
+{
+    double power = static_cast<double>(samples - 2 * edge.size());
+    for (const double w : edge) {
+        power += 2.0 * w * w;
+    }
+    return power;
+}
+
+void applyTaper(std::span<const double> edge, std::span<double> samples)
+{
+    for (std::size_t n = 0; n < edge.size(); ++n) {
+        samples[n] *= edge[n];
+        samples[samples.size() - 1 - n] *= edge[n];
+    }
+}
+
+ResidualSpectrum::ResidualSpectrum(const RealFourier& transform,
                                    std::size_t samples,
-                                   double taperPower,
+                                   double taperPowerSum,
                                    std::vector<double> linePeriods,
                                    double gapBins)
-    : m_transform(transform)
+    : m_transform(transform.output())
+    , m_powers(transform.powers())
     , m_samples(samples)
-    , m_powerScale(2.0 / (static_cast<double>(2 * (transform.size() - 1)) * taperPower))
-    , m_binsPerIndex(static_cast<double>(samples) / static_cast<double>(2 * (transform.size() - 1)))
+    , m_powerScale(2.0 / (static_cast<double>(transform.count()) * taperPowerSum))
+    , m_binsPerIndex(static_cast<double>(samples) / static_cast<double>(transform.count()))
     , m_lines(std::move(linePeriods))
     , m_gapBins(gapBins)
 {}
@@ -65,7 +84,7 @@ double ResidualSpectrum::powerFs2(std::size_t index) const
 {
     const bool isEdge =
         index == 0 || index + 1 == size(); // 0 and half the rate stand for themselves alone
-    return std::norm(m_transform[index]) * (isEdge ? m_powerScale / 2.0 : m_powerScale);
+    return m_powers[index] * (isEdge ? m_powerScale / 2.0 : m_powerScale);
 }
 
 bool ResidualSpectrum::isInGap(double bins, double extraBins) const
@@ -120,9 +139,21 @@ double ResidualSpectrum::bandPowerFs2(double lowBins,
         const double factor = weightingFactor(weighting, position(index) * binHz);
         return factor * factor;
     };
+    if (last < first) {
+        return 0.0;
+    }
     double sum = 0.0;
-    for (std::size_t index = first; index <= last; ++index) {
-        sum += weighting == Weighting::None ? powerFs2(index) : powerFs2(index) * factor2(index);
+    if (weighting == Weighting::None) {
+        const auto inside = m_powers.subspan(first, last - first + 1);
+        sum = Eigen::Map<const Eigen::ArrayXd>(inside.data(),
+                                               static_cast<Eigen::Index>(inside.size()))
+                  .sum() *
+              m_powerScale;
+        sum -= last + 1 == size() ? powerFs2(last) : 0.0; // half the rate stands for itself alone
+    } else {
+        for (std::size_t index = first; index <= last; ++index) {
+            sum += powerFs2(index) * factor2(index);
+        }
     }
     // What little the fit left in the gaps goes out again, the density beside them comes in.
     std::size_t next = first;
@@ -141,6 +172,14 @@ double ResidualSpectrum::bandPowerFs2(double lowBins,
         next = gapLast + 1;
     }
     return std::max(sum, 0.0);
+}
+
+double ResidualSpectrum::largestPowerFs2() const
+{
+    return Eigen::Map<const Eigen::ArrayXd>(m_powers.data(),
+                                            static_cast<Eigen::Index>(m_powers.size()))
+               .maxCoeff() *
+           m_powerScale;
 }
 
 std::complex<double> ResidualSpectrum::smooth(std::size_t index) const

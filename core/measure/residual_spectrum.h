@@ -2,6 +2,7 @@
 #pragma once
 
 #include "core/measure/reading.h"
+#include "core/signal/fourier.h"
 #include "core/units.h"
 
 #include <complex>
@@ -11,11 +12,17 @@
 
 namespace sinewright::core {
 
-/// Weights that taper the first and last sixteenth of a stretch to nothing by a raised cosine.
+/// Rising edge of the taper: a raised cosine over the first sixteenth of a stretch; the last sixteenth mirrors it.
 ///
 /// Nearly every sample counts in full, so that the noise found is the noise that was there; yet what the fit left
 /// over does not leak far.
-[[nodiscard]] std::vector<double> taperSamples(std::size_t count);
+[[nodiscard]] std::vector<double> taperEdge(std::size_t samples);
+
+/// Sum of the squared taper over a stretch.
+[[nodiscard]] double taperPower(std::span<const double> edge, std::size_t samples);
+
+/// Tapers both ends in place.
+void applyTaper(std::span<const double> edge, std::span<double> samples);
 
 /// Spectrum of what is left of a stretch once DC, fundamental and harmonics are taken out.
 ///
@@ -24,12 +31,12 @@ class ResidualSpectrum final
 {
 public:
     /// @param transform    of the tapered residual, zero-padded to an even length; must outlive this object.
-    /// @param taperPower   sum of the squared taper.
+    /// @param taperPowerSum  taperPower() of the taper.
     /// @param linePeriods  places of the lines that were taken out [bins], ascending; the first is the fundamental.
     /// @param gapBins      half width of the gap that each left.
-    ResidualSpectrum(std::span<const std::complex<double>> transform,
+    ResidualSpectrum(const RealFourier& transform,
                      std::size_t samples,
-                     double taperPower,
+                     double taperPowerSum,
                      std::vector<double> linePeriods,
                      double gapBins);
 
@@ -43,6 +50,9 @@ public:
 
     /// Mean square [FS^2] that one index of the transform stands for, both halves of the spectrum together.
     [[nodiscard]] double powerFs2(std::size_t index) const;
+
+    /// Largest powerFs2() of all.
+    [[nodiscard]] double largestPowerFs2() const;
 
     /// Expected mean square an index of the noise about a place: from the median of the nearest indices that no line
     /// occupies. 0 when there are none.
@@ -75,6 +85,7 @@ private:
     [[nodiscard]] std::complex<double> smooth(std::size_t index) const;
 
     std::span<const std::complex<double>> m_transform;
+    std::span<const double> m_powers;
     std::size_t m_samples;
     double m_powerScale;
     double m_binsPerIndex;

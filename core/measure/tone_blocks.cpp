@@ -136,17 +136,18 @@ std::vector<Complex> ToneBlocks::fundamentalPhasors(std::span<const double> samp
         Complex left(m_tables->columns.col(0).head(rows).dot(x),
                      m_tables->columns.col(1).head(rows).dot(x));
         left -= m_model.dc * leaks.dc;
-        const double middleTurns = turns * m_grid.middleOf(block);
+        const Complex middle = unitPhasor(turns * m_grid.middleOf(block));
+        Complex turn = middle;
         for (std::size_t line = 1; line < m_model.phasors.size(); ++line) {
-            const Complex phasor =
-                m_model.phasors[line] * unitPhasor(static_cast<double>(line + 1) * middleTurns);
+            turn *= middle;
+            const Complex phasor = m_model.phasors[line] * turn;
             left -= 0.5 * (phasor * leaks.direct[line - 1] +
                            std::conj(phasor) * leaks.mirrored[line - 1]);
         }
         // left = (V count + conj(V) image) / 2, solved for V.
         const Complex value = 2.0 * (leaks.count * left - leaks.image * std::conj(left)) /
                               (leaks.count * leaks.count - std::norm(leaks.image));
-        phasors[block] = value * unitPhasor(-middleTurns);
+        phasors[block] = value * std::conj(middle);
     }
     return phasors;
 }
@@ -163,12 +164,12 @@ void ToneBlocks::subtract(std::span<const double> samples,
     const Complex reference = m_model.phasors[0];
     const auto factorsOf = [&](std::size_t block, Eigen::Index column) {
         const double middle = m_grid.middleOf(block);
+        const Complex middleTurn = unitPhasor(turns * middle);
         Eigen::Matrix<double, kCubic, 2> values;
         for (Eigen::Index p = 0; p < kCubic; ++p) {
             const double u =
                 kNodes[static_cast<std::size_t>(p)] * static_cast<double>(m_grid.length) / 2.0;
-            const Complex value =
-                envelope.at((middle + u) * tauPerSample) * unitPhasor(turns * middle);
+            const Complex value = envelope.at((middle + u) * tauPerSample) * middleTurn;
             values.row(p) << value.real(), value.imag();
         }
         const Eigen::Matrix<double, kCubic, 2> powers = m_tables->cubic * values;
@@ -179,12 +180,10 @@ void ToneBlocks::subtract(std::span<const double> samples,
         const Complex change = envelope.at(middle * tauPerSample) / reference;
         const double swell = std::abs(change);
         const Complex turned = swell > 0.0 ? change / swell : Complex(1.0);
-        Complex follow = change;
+        Complex follow = change * middleTurn;
         for (std::size_t line = 1; line < m_model.phasors.size(); ++line) {
-            follow *= turned;
-            const auto order = static_cast<double>(line + 1);
-            const Complex phasor =
-                m_model.phasors[line] * follow * unitPhasor(order * turns * middle);
+            follow *= turned * middleTurn;
+            const Complex phasor = m_model.phasors[line] * follow;
             const Eigen::Index row = 2 * kCubic + 2 * static_cast<Eigen::Index>(line - 1);
             factors(row, column) = phasor.real();
             factors(row + 1, column) = phasor.imag();

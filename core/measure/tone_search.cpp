@@ -7,6 +7,8 @@
 #include <numbers>
 #include <vector>
 
+#include <Eigen/Core>
+
 namespace sinewright::core {
 
 namespace {
@@ -23,7 +25,7 @@ double medianPower(const StretchTransform& transform, double lowBins, double hig
     const std::size_t stride = (last - std::min(first, last)) / kMedianIndices + 1;
     std::vector<double> powers;
     for (std::size_t index = first; index <= last; index += stride) {
-        powers.push_back(transform.power(index));
+        powers.push_back(transform.powers()[index]);
     }
     if (powers.empty()) {
         return 0.0;
@@ -41,20 +43,21 @@ strongestLine(const StretchTransform& transform, double lowestBins, double lowBi
     const auto first =
         static_cast<std::size_t>(std::max(1.0, std::ceil(lowestBins / transform.binsPerIndex())));
     LineCandidate line;
-    std::size_t best = 0;
-    for (std::size_t index = first; index + 1 < transform.size(); ++index) {
-        const double power = transform.power(index);
-        if (power > line.power) {
-            line.power = power;
-            best = index;
-        }
+    if (first + 2 >= transform.size()) {
+        return line;
     }
-    if (best == 0) {
+    const auto searched = transform.powers().subspan(first, transform.size() - 1 - first);
+    Eigen::Index highest = 0;
+    line.power = Eigen::Map<const Eigen::ArrayXd>(searched.data(),
+                                                  static_cast<Eigen::Index>(searched.size()))
+                     .maxCoeff(&highest);
+    const std::size_t best = first + static_cast<std::size_t>(highest);
+    if (!(line.power > 0.0)) {
         return line;
     }
     // Parabola through the logarithms of three neighbours: all the windows used here are close to a bell.
     const auto level = [&transform](std::size_t index) {
-        return std::log(std::max(transform.power(index), std::numeric_limits<double>::min()));
+        return std::log(std::max(transform.powers()[index], std::numeric_limits<double>::min()));
     };
     const double before = level(best - 1);
     const double here = level(best);

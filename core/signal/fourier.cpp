@@ -6,6 +6,8 @@
 #include <cassert>
 #include <mutex>
 
+#include <Eigen/Core>
+
 namespace sinewright::core {
 
 namespace {
@@ -24,12 +26,14 @@ struct RealFourier::Plan
     std::size_t count;
     double* input;
     fftw_complex* output;
+    double* powers;
     fftw_plan plan;
 
     explicit Plan(std::size_t length)
         : count(length)
         , input(fftw_alloc_real(length))
         , output(fftw_alloc_complex(length / 2 + 1))
+        , powers(fftw_alloc_real(length / 2 + 1))
         , plan(nullptr)
     {
         const std::scoped_lock lock(plannerMutex());
@@ -45,6 +49,7 @@ struct RealFourier::Plan
         }
         fftw_free(input);
         fftw_free(output);
+        fftw_free(powers);
     }
 
     Plan(const Plan&) = delete;
@@ -79,6 +84,15 @@ std::span<const std::complex<double>> RealFourier::output() const
 void RealFourier::forward()
 {
     fftw_execute(m_plan->plan);
+    const auto bins = output();
+    const auto size = static_cast<Eigen::Index>(bins.size());
+    Eigen::Map<Eigen::ArrayXd>(m_plan->powers, size) =
+        Eigen::Map<const Eigen::ArrayXcd>(bins.data(), size).abs2();
+}
+
+std::span<const double> RealFourier::powers() const
+{
+    return {m_plan->powers, m_plan->count / 2 + 1};
 }
 
 std::size_t goodTransformLength(std::size_t count)

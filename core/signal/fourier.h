@@ -30,8 +30,11 @@ public:
     [[nodiscard]] std::span<double> input();
     [[nodiscard]] std::span<const std::complex<double>> output() const;
 
-    /// Transforms input() into output(); the input stays.
+    /// Transforms input() into output() and powers(); the input stays.
     void forward();
+
+    /// Squared magnitudes of output().
+    [[nodiscard]] std::span<const double> powers() const;
 
 private:
     struct Plan;

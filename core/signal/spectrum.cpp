@@ -2,15 +2,15 @@
 #include "core/signal/spectrum.h"
 
 #include <cassert>
-#include <complex>
 #include <numbers>
+
+#include <Eigen/Core>
 
 namespace sinewright::core {
 
 Spectrum::Spectrum(const CosineWindow& window, std::size_t count)
     : m_window(windowSamples(window, count))
     , m_fourier(count)
-    , m_power(count / 2 + 1)
     , m_noiseBandwidthBins(windowFigures(window).noiseBandwidthBins)
 {
     assert(count % 2 == 0);
@@ -28,16 +28,12 @@ Spectrum::Spectrum(const CosineWindow& window, std::size_t count)
 std::span<const double> Spectrum::powerFs2(std::span<const double> samples)
 {
     assert(samples.size() == m_window.size());
-    const auto input = m_fourier.input();
-    for (std::size_t n = 0; n < samples.size(); ++n) {
-        input[n] = samples[n] * m_window[n];
-    }
+    const auto size = static_cast<Eigen::Index>(samples.size());
+    Eigen::Map<Eigen::ArrayXd>(m_fourier.input().data(), size) =
+        Eigen::Map<const Eigen::ArrayXd>(samples.data(), size) *
+        Eigen::Map<const Eigen::ArrayXd>(m_window.data(), size);
     m_fourier.forward();
-    const auto bins = m_fourier.output();
-    for (std::size_t m = 0; m < bins.size(); ++m) {
-        m_power[m] = std::norm(bins[m]);
-    }
-    return m_power;
+    return m_fourier.powers();
 }
 
 } // namespace sinewright::core

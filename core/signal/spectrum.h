@@ -31,7 +31,6 @@ public:
 private:
     std::vector<double> m_window; ///< scaled so that a line reads its power
     RealFourier m_fourier;
-    std::vector<double> m_power;
     double m_noiseBandwidthBins;
 };
 
