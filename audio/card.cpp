@@ -49,6 +49,8 @@ public:
     ~CardSource() override { release(); }
     CardSource(const CardSource&) = delete;
     CardSource& operator=(const CardSource&) = delete;
+    CardSource(CardSource&&) = delete;
+    CardSource& operator=(CardSource&&) = delete;
 
     core::Result<StreamFormat> open() override
     {

@@ -20,7 +20,7 @@ constexpr int kDefaultHighestOrder = 10;
 
 } // namespace
 
-BarsPlot::BarsPlot(QWidget* parent) : Plot(u"harmonics"_s, tr("Harmonics, dBc"), parent), m_orders(QSharedPointer<NumberTicker>::create(1.0))
+BarsPlot::BarsPlot(QWidget* parent) : Plot(u"harmonics"_s, tr("Harmonics"), u"dBc"_s, parent), m_orders(QSharedPointer<NumberTicker>::create(1.0))
 {
     yAxis->setTicker(QSharedPointer<NumberTicker>::create(kStepDb));
     xAxis->setTicker(m_orders);

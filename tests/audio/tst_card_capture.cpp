@@ -62,6 +62,8 @@ public:
     }
     StderrCatcher(const StderrCatcher&) = delete;
     StderrCatcher& operator=(const StderrCatcher&) = delete;
+    StderrCatcher(StderrCatcher&&) = delete;
+    StderrCatcher& operator=(StderrCatcher&&) = delete;
 
     QByteArray caught()
     {

@@ -31,6 +31,8 @@ public:
     ~Bench() { m_source->stop(); }
     Bench(const Bench&) = delete;
     Bench& operator=(const Bench&) = delete;
+    Bench(Bench&&) = delete;
+    Bench& operator=(Bench&&) = delete;
 
     bool start() { return m_source->open().has_value() && m_source->start(m_ring).has_value(); }
 

@@ -67,6 +67,13 @@ public:
         (subject != nullptr ? subject : &m_window)->grab().save(m_folder.filePath(name + u".png"_s));
     }
 
+    void press(Qt::Key key)
+    {
+        m_window.activateWindow();
+        static_cast<void>(QTest::qWaitForWindowActive(&m_window));
+        QTest::keyClick(&m_window, key);
+    }
+
     ui::MainWindow& window() { return m_window; }
 
 private:
@@ -123,17 +130,17 @@ void shootViews(Studio& studio, const std::shared_ptr<const core::Frame>& frame)
         }
         studio.view(ui::Page::Trim, theme, QSize(1280, 800));
         for (const auto& [word, key] : {std::pair(u"keys-"_s, Qt::Key_F1), std::pair(u"figures-"_s, Qt::Key_T)}) {
-            QTest::keyClick(&studio.window(), key);
+            studio.press(key);
             if (auto* dialog = studio.window().findChild<QDialog*>()) {
                 studio.shoot(word + name, dialog);
                 dialog->close();
                 QTest::qWait(50);
             }
         }
-        QTest::keyClick(&studio.window(), Qt::Key_F11);
+        studio.press(Qt::Key_F11);
         studio.window().resize(1280, 800);
         studio.shoot(u"arms-length-"_s + name);
-        QTest::keyClick(&studio.window(), Qt::Key_F11);
+        studio.press(Qt::Key_F11);
     }
 }
 
