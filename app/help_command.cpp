@@ -62,12 +62,12 @@ SOURCE is 'demo', 'card', 'card:NAME', 'card:HOST::NAME' or a file; see
 'sinewright --help'.
 
 Options
-  --json             one JSON object (schema sinewright.reading/1) instead of the
+  --json             one JSON object (schema sinewright.reading/1), no
                      table; a figure that cannot be had is null
   --channel N        channel, counted from 1 (default 1)
   --rate HZ          card and demo: sample rate (default: the card's own; 96000)
   --start S          take: where to begin, in seconds (default 0)
-  --seconds S        how much to measure. Default: of a take all that follows the
+  --seconds S        how much to measure. Default: of a take all behind the
                      start, 60 s at the most; of card and demo 4 s. Ask for more
                      if you like: up to 16777216 samples, 174 s at 96 kHz.
   --band LO:HI       measuring band in Hz (default 20:20000); the upper edge is
