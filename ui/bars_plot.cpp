@@ -22,6 +22,7 @@ constexpr int kDefaultHighestOrder = 10;
 
 BarsPlot::BarsPlot(QWidget* parent) : Plot(u"harmonics"_s, tr("Harmonics"), u"dBc"_s, parent), m_orders(QSharedPointer<NumberTicker>::create(1.0))
 {
+    setSideMargins(34, 8);
     yAxis->setTicker(QSharedPointer<NumberTicker>::create(kStepDb));
     xAxis->setTicker(m_orders);
     xAxis->grid()->setVisible(false);

@@ -58,6 +58,7 @@ public:
     void setBench(const BenchState& state);
     void applyView(const ViewSettings& settings);
     void poll();
+    void drawPending();
     void showNow();
     void startPolling();
     void focusPage();
@@ -89,6 +90,7 @@ public:
     LevelUnit m_spectrumUnit = LevelUnit::Dbc;
     bool m_isQuiet = false; ///< settings are being restored: nothing to announce
     bool m_wasMaximised = false;
+    bool m_isDrawPending = false;
     qint64 m_tableAtMs = 0;
 
 private:
@@ -312,10 +314,10 @@ void MainWindow::Impl::showTable()
     table->verticalHeader()->hide();
     table->horizontalHeader()->setStretchLastSection(true);
     table->horizontalHeader()->setHighlightSections(false);
-    table->horizontalHeader()->setDefaultAlignment(Qt::AlignLeft | Qt::AlignVCenter);
     m_figures.setFrame(m_shown.get());
     table->resizeColumnsToContents();
     column->addWidget(table, 1);
+    table->selectRow(0);
     dialog->show();
     table->setFocus();
 }
@@ -347,6 +349,7 @@ void MainWindow::Impl::poll()
     }
     std::shared_ptr<const core::Frame> frame = m_feed();
     if (frame == m_newest) {
+        drawPending(); // the newest frame may have been passed over, and no other came
         updateAdvice();
         return;
     }
@@ -361,8 +364,9 @@ void MainWindow::Impl::poll()
         return;
     }
     m_shown = m_newest;
+    m_isDrawPending = true;
     if (m_pace.isDue(lastDrawMs())) {
-        page()->showFrame(m_shown);
+        drawPending();
     }
     if (m_clock.elapsed() - m_tableAtMs >= kTableEveryMs) {
         m_tableAtMs = m_clock.elapsed();
@@ -371,9 +375,18 @@ void MainWindow::Impl::poll()
     updateAdvice();
 }
 
+void MainWindow::Impl::drawPending()
+{
+    if (m_isDrawPending) {
+        m_isDrawPending = false;
+        page()->showFrame(m_shown);
+    }
+}
+
 void MainWindow::Impl::showNow()
 {
-    page()->showFrame(m_shown);
+    m_isDrawPending = true;
+    drawPending();
     updateAdvice();
 }
 
@@ -390,6 +403,9 @@ void MainWindow::Impl::setBench(const BenchState& state)
     m_state = state;
     m_sources->setBenchState(state);
     m_bottom->setBenchState(state);
+    if (isStale(state)) {
+        m_sources->meter().clear();
+    }
     for (int i = 0; i < m_pages->count(); ++i) {
         qobject_cast<BenchPage*>(m_pages->widget(i))->showBench(state);
     }
