@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/main_window.h"
 
+#include <QCursor>
 #include <QDialog>
 #include <QElapsedTimer>
 #include <QHBoxLayout>
@@ -287,7 +288,8 @@ void MainWindow::Impl::savePage()
 void MainWindow::Impl::savePlot()
 {
     const QList<Plot*> plots = page()->plots();
-    const auto at = std::find_if(plots.begin(), plots.end(), [](const Plot* plot) { return plot->underMouse(); });
+    const QWidget* pointed = m_window.childAt(m_window.mapFromGlobal(QCursor::pos()));
+    const auto at = std::find(plots.begin(), plots.end(), pointed);
     if (at == plots.end()) {
         m_window.showNotice(tr("Point at a plot first: the picture is taken of the one under the pointer."));
         return;

@@ -44,25 +44,25 @@ SpectrumPlot::SpectrumPlot(QWidget* parent)
     }
     new Overprint(this, u"main"_s, [this](QCPPainter& painter) { paintStems(painter); });
     restyle();
-    show();
+    present();
 }
 
 void SpectrumPlot::setFrame(std::shared_ptr<const core::Frame> frame)
 {
     m_model.setColumns(columns());
     m_model.setFrame(std::move(frame));
-    show();
+    present();
     draw();
 }
 
 void SpectrumPlot::setUnit(LevelUnit unit)
 {
     m_model.setUnit(unit);
-    show();
+    present();
     draw();
 }
 
-void SpectrumPlot::show()
+void SpectrumPlot::present()
 {
     fill(*m_lowest, m_model.lowest());
     fill(*m_highest, m_model.highest());
@@ -92,7 +92,7 @@ void SpectrumPlot::resizeEvent(QResizeEvent* event)
 {
     Plot::resizeEvent(event);
     m_model.setColumns(columns());
-    show();
+    present();
 }
 
 void SpectrumPlot::paintStems(QCPPainter& painter) const

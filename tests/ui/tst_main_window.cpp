@@ -267,7 +267,6 @@ private slots:
         QVERIFY(plot != nullptr);
         QTest::mouseMove(&bench.window, QPoint(5, 5));
         QTest::mouseMove(&bench.window, plot->mapTo(&bench.window, plot->rect().center()));
-        QTRY_VERIFY(plot->underMouse());
         QTest::keyClick(&bench.window, Qt::Key_P, Qt::ShiftModifier);
         QCOMPARE(wanted.count(), 1);
         const auto request = wanted.at(0).at(0).value<PictureRequest>();

@@ -92,8 +92,8 @@ private slots:
         const QImage image = pictureOf(plot);
         const QRect inside = plot.axisRect()->rect();
         const AxisRange range = plot.model().range();
-        // The axis is linear in dB from its low end at the bottom row to its high end at the top row.
-        const double expected = inside.top() + inside.height() * (range.high - dbc) / range.span();
+        // The axis is linear in dB: its low end is the bottom row, its high end the inside's height above that.
+        const double expected = inside.bottom() - inside.height() * (dbc - range.low) / range.span();
         const int column = static_cast<int>(std::lround(plot.xAxis->coordToPixel(2.0)));
         const int actual = topRow(image, inside, column, paper().slate);
         QVERIFY(actual >= 0);
