@@ -1,16 +1,17 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "audio/source.h"
+
 #include <memory>
 #include <string>
 #include <vector>
 
-#include "audio/source.h"
-
 namespace sinewright::audio {
 
 /// One input of an audio interface as the system offers it.
-struct CardInfo {
+struct CardInfo
+{
     std::string hostApi;
     std::string name;
     int inputChannels = 0;
@@ -23,9 +24,11 @@ struct CardInfo {
 [[nodiscard]] core::Result<std::vector<CardInfo>> listCards();
 
 /// Which input to open.
-struct CardChoice {
+struct CardChoice
+{
     std::string hostApi; ///< empty: any
-    std::string name;    ///< exact name or an unambiguous part of it, case ignored; empty: the default input
+    std::string
+        name; ///< exact name or an unambiguous part of it, case ignored; empty: the default input
     double rateHz = 0.0; ///< 0: the card's default
     int channels = 0;    ///< how many to open; 0: two where there are two
 };

@@ -11,8 +11,12 @@
 
 namespace sinewright::audio {
 
+/// The widest stream and take that is read; common practice for the largest interfaces.
+inline constexpr int kMostChannels = 32;
+
 /// A block as it comes out of the ring.
-struct RingBlock {
+struct RingBlock
+{
     std::uint64_t firstFrame = 0;   ///< counted from the start of the source, lost frames included
     std::uint64_t lostBefore = 0;   ///< frames lost right before it
     std::vector<float> interleaved; ///< frames x channels, 1.0 = full scale
@@ -20,9 +24,10 @@ struct RingBlock {
 
 /// The lock-free way from whoever has samples to the analyser thread: one pusher, one popper.
 ///
-/// When it is full the new block is dropped and counted, and the next block that fits carries the gap, so that nothing
-/// is analysed across it.
-class SampleRing final {
+/// When it is full the new block is dropped whole and counted, and the next block that fits carries the gap, so that
+/// nothing is analysed across it. A second queue carries the blocks' headers; when that one is full the ring is full.
+class SampleRing final
+{
 public:
     /// @param channels        1 .. 32
     /// @param capacityFrames  at least one block of the pusher
@@ -44,7 +49,8 @@ public:
     [[nodiscard]] std::uint64_t framesSeen() const noexcept;
 
 private:
-    struct Header {
+    struct Header
+    {
         std::uint64_t firstFrame = 0;
         std::uint64_t lostBefore = 0;
         std::uint32_t frames = 0;

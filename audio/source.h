@@ -1,17 +1,18 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <string>
-
 #include "core/result.h"
 #include "core/units.h"
+
+#include <string>
 
 namespace sinewright::audio {
 
 class SampleRing;
 
 /// What a source delivers once it is open.
-struct StreamFormat {
+struct StreamFormat
+{
     core::SampleRate rate;
     int channels = 1; ///< interleaved in the ring
 };
@@ -25,7 +26,8 @@ enum class SourceCondition {
 };
 
 /// What the window says about a source. `message` is one line of English for the log; empty while all is well.
-struct SourceStatus {
+struct SourceStatus
+{
     SourceCondition condition = SourceCondition::Idle;
     std::string message;
 };
@@ -33,12 +35,15 @@ struct SourceStatus {
 /// Where samples come from. Three exist: card, take, demo. Each pushes into the ring on a thread of its own.
 ///
 /// All calls but status() come from one thread, [dev]; status() from any.
-class Source {
+class Source
+{
 public:
     Source() = default;
     virtual ~Source() = default;
     Source(const Source&) = delete;
     Source& operator=(const Source&) = delete;
+    Source(Source&&) = delete;
+    Source& operator=(Source&&) = delete;
 
     /// Opens the device or file and says what it delivers. May take seconds.
     [[nodiscard]] virtual core::Result<StreamFormat> open() = 0;

@@ -1,17 +1,18 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "audio/source.h"
+
 #include <cstdint>
 #include <filesystem>
 #include <memory>
 #include <vector>
 
-#include "audio/source.h"
-
 namespace sinewright::audio {
 
 /// What a take on disk holds.
-struct TakeInfo {
+struct TakeInfo
+{
     core::SampleRate rate;
     int channels = 0;
     std::uint64_t frames = 0;
@@ -28,8 +29,10 @@ struct TakeInfo {
 /// @param startFrame  first frame; past the end is InvalidArgument.
 /// @param frames      at most this many; fewer when the take ends before.
 /// @error as takeInfo(); InvalidArgument for a channel that is not there; Damaged for samples that are not finite.
-[[nodiscard]] core::Result<std::vector<double>>
-readTake(const std::filesystem::path& file, int channel, std::uint64_t startFrame, std::uint64_t frames);
+[[nodiscard]] core::Result<std::vector<double>> readTake(const std::filesystem::path& file,
+                                                         int channel,
+                                                         std::uint64_t startFrame,
+                                                         std::uint64_t frames);
 
 /// Plays a take into the ring at its own pace, once.
 [[nodiscard]] std::unique_ptr<Source> makeTakeSource(std::filesystem::path file);

@@ -41,6 +41,10 @@ class Trend final {
 public:
     static constexpr double kSpanS = 180.0; ///< [s] how much is kept: the last three minutes
 
+    /// [s] Points nearer than this to the one before are left out: a snapshot stays below 4500 points, small enough to
+    /// be copied for every frame.
+    static constexpr double kLeastSpacingS = 0.04;
+
     /// Adds a quick reading. A reading without a tone becomes a point without figures: a hole in the line.
     void addQuick(const Reading& reading, bool afterGap);
 
@@ -57,6 +61,7 @@ private:
     std::deque<TrendPoint> m_points;
     std::optional<BestReading> m_best;
     double m_bestFromS = 0.0;
+    bool m_isGapPending = false; ///< a gap not yet marked, its first point having been left out
 };
 
 } // namespace sinewright::core

@@ -1,0 +1,187 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include "core/measure/figures.h"
+
+#include "core/measure/hum.h"
+#include "core/signal/weighting.h"
+#include "core/units.h"
+
+#include <algorithm>
+#include <cmath>
+#include <complex>
+#include <numbers>
+
+namespace sinewright::core {
+
+namespace {
+
+using Complex = std::complex<double>;
+constexpr double kPi = std::numbers::pi;
+
+constexpr double kUnsteadyLevel = 0.01;
+constexpr double kUnsteadyFrequency = 100e-6;
+constexpr double kSignificantSigmas = 4.0;
+constexpr double kNumericalNoise =
+    1e-14; ///< of the fundamental: what lies below is rounding, not noise
+constexpr double kNumericalLine = 1e-10; ///< the same for a line: -200 dBc
+
+class FigureWriter
+{
+public:
+    FigureWriter(const ToneFindings& findings, Reading& reading)
+        : m_findings(findings)
+        , m_reading(reading)
+    {
+        // As mean square of a sample, were the noise about the fundamental white.
+        m_samplePowerFs2 = findings.residual.localPowerFs2(findings.model.periods) *
+                           static_cast<double>(findings.residual.size() - 1);
+        m_phasorPowerFs2 = m_samplePowerFs2 * findings.phasorNoise / 2.0;
+    }
+
+    void writeTone()
+    {
+        const Envelope& envelope = m_findings.envelope;
+        const double amplitude = envelope.amplitude();
+        m_reading.dcFs = m_findings.model.dc;
+        m_reading.frequencyHz = hzOf(envelope.periods());
+        m_reading.levelDbfs = decibelsFromRatio(amplitude);
+        if (m_findings.settings.fullScaleVrms) {
+            m_reading.levelVrms = amplitude * *m_findings.settings.fullScaleVrms;
+        }
+        // Noise to signal of the mean amplitude; the Cramer-Rao bound of the frequency is sqrt 6 / pi times that, in
+        // periods a stretch (Rife and Boorstyn 1974, from memory), and the least-squares coefficients of the second and
+        // third Legendre polynomial scatter by sqrt 3 and sqrt 5 times sqrt 2 of it.
+        const double relative =
+            std::sqrt(m_samplePowerFs2 / static_cast<double>(m_findings.residual.samples())) /
+            amplitude;
+        const double periodsStd = std::sqrt(6.0) / kPi * relative;
+        const double changeStd = 6.0 * std::sqrt(10.0) / kPi * relative;
+        const double levelStd = std::sqrt(4.0 * 6.0 + 2.25 * 10.0) * relative;
+        const double change = std::abs(envelope.periodsChange());
+        const bool isDrifting = change > kSignificantSigmas * changeStd;
+        // Where the tone moves, the figure stands for a range: an even drift has the standard deviation of its width.
+        const double drift = isDrifting ? change / std::sqrt(12.0) : 0.0;
+        m_reading.frequencyStdHz = hzOf(std::hypot(periodsStd, drift));
+        if (isDrifting && change > kUnsteadyFrequency * envelope.periods()) {
+            m_reading.warnings.push_back(Warning::UnsteadyFrequency);
+        }
+        if (envelope.levelChange() > std::max(kUnsteadyLevel, kSignificantSigmas * levelStd)) {
+            m_reading.warnings.push_back(Warning::UnsteadyLevel);
+        }
+    }
+
+    void writeHarmonics()
+    {
+        const Complex first = m_findings.model.phasors[0];
+        const Complex toSine = std::conj(first * Complex(0.0, 1.0)) / std::abs(first);
+        Complex turn = toSine;
+        double sum = 0.0;
+        bool isAny = false;
+        for (std::size_t line = 1; line < m_findings.model.phasors.size(); ++line) {
+            turn *= toSine;
+            HarmonicReading harmonic;
+            harmonic.order = static_cast<int>(line + 1);
+            harmonic.frequencyHz = harmonic.order * *m_reading.frequencyHz;
+            harmonic.ratio = std::abs(m_findings.model.phasors[line]) / std::abs(first);
+            const double phase =
+                std::arg(m_findings.model.phasors[line] * turn * Complex(0.0, 1.0));
+            harmonic.phaseDeg = phase <= -kPi ? 180.0 : phase * 180.0 / kPi;
+            harmonic.inBand = isInBand(harmonic.frequencyHz);
+            if (harmonic.inBand) {
+                isAny = true;
+                sum += harmonic.ratio * harmonic.ratio;
+            }
+            m_reading.harmonics.push_back(harmonic);
+        }
+        if (isAny) {
+            m_reading.thdRatio = std::sqrt(sum);
+        }
+        if (*m_reading.frequencyHz * m_findings.settings.harmonicCount > band().highHz) {
+            m_reading.warnings.push_back(Warning::HarmonicsAboveBand);
+        }
+    }
+
+    /// Harmonics in band [FS^2], weighted; what noise adds to each is taken off, for the noise is counted once already.
+    [[nodiscard]] double harmonicPowerFs2(double fundamentalFs2, Weighting weighting) const
+    {
+        double sum = 0.0;
+        for (const HarmonicReading& harmonic : m_reading.harmonics) {
+            if (harmonic.inBand) {
+                const double power =
+                    harmonic.ratio * harmonic.ratio * fundamentalFs2 - m_phasorPowerFs2;
+                const double factor = weightingFactor(weighting, harmonic.frequencyHz);
+                sum += std::max(power, 0.0) * factor * factor;
+            }
+        }
+        return sum;
+    }
+
+    void writeNoise()
+    {
+        const auto noiseFs2 = [&](Weighting weighting) {
+            return m_findings.residual.bandPowerFs2(
+                binsOf(band().lowHz), binsOf(band().highHz), weighting, hzOf(1.0));
+        };
+        const double amplitude = m_findings.envelope.amplitude();
+        const double fundamental = amplitude * amplitude / 2.0;
+        const double noise = noiseFs2(m_findings.settings.weighting);
+        if (noise > fundamental * kNumericalNoise * kNumericalNoise) {
+            m_reading.noiseDbfs = dbfsFromRms(std::sqrt(noise));
+            m_reading.snrDb = -decibelsFromRatio(std::sqrt(noise / fundamental));
+        }
+        if (!isInBand(*m_reading.frequencyHz)) {
+            return; // the total of a band without the fundamental is no reference
+        }
+        const double factor =
+            weightingFactor(m_findings.settings.weighting, *m_reading.frequencyHz);
+        const double rest = noise + harmonicPowerFs2(fundamental, m_findings.settings.weighting);
+        const double total = fundamental * factor * factor + rest;
+        m_reading.thdnRatio = std::sqrt(rest / total);
+        if (*m_reading.thdnRatio > 0.0) {
+            m_reading.sinadDb = -decibelsFromRatio(*m_reading.thdnRatio);
+        }
+        if (m_reading.thdRatio) {
+            const double plain = m_findings.settings.weighting == Weighting::None
+                                     ? total
+                                     : fundamental + noiseFs2(Weighting::None) +
+                                           harmonicPowerFs2(fundamental, Weighting::None);
+            m_reading.thdRRatio = *m_reading.thdRatio * std::sqrt(fundamental / plain);
+        }
+    }
+
+    void writeHum()
+    {
+        const auto hum = findHum(m_findings.residual, hzOf(1.0));
+        const double fundamental = m_findings.envelope.amplitude();
+        if (hum && hum->amplitude > kNumericalLine * fundamental) {
+            m_reading.mainsHumDbc = decibelsFromRatio(hum->amplitude / fundamental);
+            m_reading.warnings.push_back(Warning::MainsHum);
+        }
+    }
+
+private:
+    [[nodiscard]] double binsOf(double hz) const { return hz * m_findings.lengthS; }
+    [[nodiscard]] double hzOf(double bins) const { return bins / m_findings.lengthS; }
+    [[nodiscard]] const Band& band() const { return m_findings.settings.band; }
+    [[nodiscard]] bool isInBand(double hz) const
+    {
+        return hz >= band().lowHz && hz <= band().highHz;
+    }
+
+    const ToneFindings& m_findings;
+    Reading& m_reading;
+    double m_samplePowerFs2 = 0.0; ///< noise about the fundamental
+    double m_phasorPowerFs2 = 0.0; ///< what that noise adds to a harmonic's squared rms
+};
+
+} // namespace
+
+void writeFigures(const ToneFindings& findings, Reading& reading)
+{
+    FigureWriter writer(findings, reading);
+    writer.writeTone();
+    writer.writeHarmonics();
+    writer.writeNoise();
+    writer.writeHum();
+}
+
+} // namespace sinewright::core

@@ -1,0 +1,219 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include "core/measure/residual_spectrum.h"
+
+#include "core/signal/weighting.h"
+
+#include <algorithm>
+#include <cmath>
+#include <numbers>
+
+#include <Eigen/Core>
+
+namespace sinewright::core {
+
+namespace {
+
+constexpr double kPi = std::numbers::pi;
+constexpr double kTaperShare = 1.0 / 16.0;
+
+/// The median of exponentially distributed powers is ln 2 times their mean.
+constexpr double kMedianToMean = 1.0 / std::numbers::ln2;
+
+constexpr std::size_t kLocalIndices = 64;    ///< wanted on both sides together for a local density
+constexpr std::size_t kLocalReach = 512;     ///< how far they are looked for on each side
+constexpr std::size_t kMedianIndices = 4096; ///< enough for a median good to 2.5 %
+
+double median(std::vector<double>& values)
+{
+    const auto middle = values.begin() + static_cast<std::ptrdiff_t>(values.size() / 2);
+    std::nth_element(values.begin(), middle, values.end());
+    return *middle;
+}
+
+} // namespace
+
+std::vector<double> taperEdge(std::size_t samples)
+{
+    std::vector<double> edge(static_cast<std::size_t>(static_cast<double>(samples) * kTaperShare));
+    for (std::size_t n = 0; n < edge.size(); ++n) {
+        const double s =
+            std::sin(kPi / 2.0 * (static_cast<double>(n) + 0.5) / static_cast<double>(edge.size()));
+        edge[n] = s * s;
+    }
+    return edge;
+}
+
+double taperPower(std::span<const double> edge, std::size_t samples)
+{
+    double power = static_cast<double>(samples - 2 * edge.size());
+    for (const double w : edge) {
+        power += 2.0 * w * w;
+    }
+    return power;
+}
+
+void applyTaper(std::span<const double> edge, std::span<double> samples)
+{
+    for (std::size_t n = 0; n < edge.size(); ++n) {
+        samples[n] *= edge[n];
+        samples[samples.size() - 1 - n] *= edge[n];
+    }
+}
+
+ResidualSpectrum::ResidualSpectrum(const RealFourier& transform,
+                                   std::size_t samples,
+                                   double taperPowerSum,
+                                   std::vector<double> linePeriods,
+                                   double gapBins)
+    : m_transform(transform.output())
+    , m_powers(transform.powers())
+    , m_samples(samples)
+    , m_powerScale(2.0 / (static_cast<double>(transform.count()) * taperPowerSum))
+    , m_binsPerIndex(static_cast<double>(samples) / static_cast<double>(transform.count()))
+    , m_lines(std::move(linePeriods))
+    , m_gapBins(gapBins)
+{}
+
+std::size_t ResidualSpectrum::indexAt(double bins) const
+{
+    const double index = std::round(bins / m_binsPerIndex);
+    return static_cast<std::size_t>(std::clamp(index, 0.0, static_cast<double>(size() - 1)));
+}
+
+double ResidualSpectrum::powerFs2(std::size_t index) const
+{
+    const bool isEdge =
+        index == 0 || index + 1 == size(); // 0 and half the rate stand for themselves alone
+    return m_powers[index] * (isEdge ? m_powerScale / 2.0 : m_powerScale);
+}
+
+bool ResidualSpectrum::isInGap(double bins, double extraBins) const
+{
+    const double reach = m_gapBins + extraBins;
+    const auto above = std::ranges::lower_bound(m_lines, bins);
+    return (above != m_lines.end() && *above - bins <= reach) ||
+           (above != m_lines.begin() && bins - *(above - 1) <= reach) || bins <= reach;
+}
+
+double ResidualSpectrum::localPowerFs2(double bins) const
+{
+    const std::size_t middle = indexAt(bins);
+    std::vector<double> powers;
+    powers.reserve(kLocalIndices + 2);
+    for (std::size_t step = 1; step <= kLocalReach && powers.size() < kLocalIndices; ++step) {
+        if (middle + step + 1 < size() && !isInGap(position(middle + step))) {
+            powers.push_back(powerFs2(middle + step));
+        }
+        if (middle > step && !isInGap(position(middle - step))) {
+            powers.push_back(powerFs2(middle - step));
+        }
+    }
+    return powers.empty() ? 0.0 : median(powers) * kMedianToMean;
+}
+
+double ResidualSpectrum::medianPowerFs2(double lowBins, double highBins) const
+{
+    const std::size_t first = std::max<std::size_t>(indexAt(lowBins), 1);
+    const std::size_t end = std::min(indexAt(highBins) + 1, size() - 1);
+    std::vector<double> powers;
+    if (end > first) {
+        const std::size_t stride = (end - first + kMedianIndices - 1) / kMedianIndices;
+        for (std::size_t index = first; index < end; index += stride) {
+            if (!isInGap(position(index))) {
+                powers.push_back(powerFs2(index));
+            }
+        }
+    }
+    return powers.empty() ? 0.0 : median(powers) * kMedianToMean;
+}
+
+double ResidualSpectrum::bandPowerFs2(double lowBins,
+                                      double highBins,
+                                      Weighting weighting,
+                                      double binHz) const
+{
+    const auto first = static_cast<std::size_t>(std::max(1.0, std::ceil(lowBins / m_binsPerIndex)));
+    const auto last = static_cast<std::size_t>(
+        std::clamp(std::floor(highBins / m_binsPerIndex), 0.0, static_cast<double>(size() - 1)));
+    const auto factor2 = [&](std::size_t index) {
+        const double factor = weightingFactor(weighting, position(index) * binHz);
+        return factor * factor;
+    };
+    if (last < first) {
+        return 0.0;
+    }
+    double sum = 0.0;
+    if (weighting == Weighting::None) {
+        const auto inside = m_powers.subspan(first, last - first + 1);
+        sum = Eigen::Map<const Eigen::ArrayXd>(inside.data(),
+                                               static_cast<Eigen::Index>(inside.size()))
+                  .sum() *
+              m_powerScale;
+        sum -= last + 1 == size() ? powerFs2(last) : 0.0; // half the rate stands for itself alone
+    } else {
+        for (std::size_t index = first; index <= last; ++index) {
+            sum += powerFs2(index) * factor2(index);
+        }
+    }
+    // What little the fit left in the gaps goes out again, the density beside them comes in.
+    std::size_t next = first;
+    for (const double line : m_lines) {
+        const double from = std::ceil((line - m_gapBins) / m_binsPerIndex);
+        const auto gapFirst = std::max(next, static_cast<std::size_t>(std::max(0.0, from)));
+        const auto gapLast = static_cast<std::size_t>(
+            std::max(0.0, std::floor((line + m_gapBins) / m_binsPerIndex)));
+        if (gapFirst > last || gapLast < gapFirst) {
+            continue;
+        }
+        const double fill = localPowerFs2(line);
+        for (std::size_t index = gapFirst; index <= std::min(gapLast, last); ++index) {
+            sum += (fill - powerFs2(index)) * factor2(index);
+        }
+        next = gapLast + 1;
+    }
+    return std::max(sum, 0.0);
+}
+
+double ResidualSpectrum::largestPowerFs2() const
+{
+    return Eigen::Map<const Eigen::ArrayXd>(m_powers.data(),
+                                            static_cast<Eigen::Index>(m_powers.size()))
+               .maxCoeff() *
+           m_powerScale;
+}
+
+std::complex<double> ResidualSpectrum::smooth(std::size_t index) const
+{
+    // A raised cosine over the stretch, as a convolution; counted from the first sample its neighbours enter with
+    // the sign changed.
+    return 0.5 * m_transform[index] - 0.25 * (m_transform[index - 1] + m_transform[index + 1]);
+}
+
+double ResidualSpectrum::smoothPower(std::size_t index) const
+{
+    return index == 0 || index + 1 >= size() ? 0.0 : std::norm(smooth(index));
+}
+
+ResidualSpectrum::Line ResidualSpectrum::lineAt(std::size_t index) const
+{
+    if (index < 2 || index + 2 >= size()) {
+        return {position(index), 0.0};
+    }
+    const double here = std::abs(smooth(index));
+    const double before = std::abs(smooth(index - 1));
+    const double after = std::abs(smooth(index + 1));
+    if (!(here > 0.0)) {
+        return {position(index), 0.0};
+    }
+    // Raised cosine: with r the ratio to the larger neighbour the line lies (2 r - 1) / (r + 1) bins towards it.
+    // @source  Grandke, IEEE Trans. Instrum. Meas. 32 (1983) 350-355, from memory.
+    const bool isAbove = after >= before;
+    const double ratio = std::max(before, after) / here;
+    const double offset = std::clamp((2.0 * ratio - 1.0) / (ratio + 1.0), 0.0, 0.5);
+    const double shape =
+        offset == 0.0 ? 1.0 : std::sin(kPi * offset) / (kPi * offset * (1.0 - offset * offset));
+    const double amplitude = here * 4.0 / (static_cast<double>(m_samples) * shape);
+    return {position(index) + (isAbove ? offset : -offset) * m_binsPerIndex, amplitude};
+}
+
+} // namespace sinewright::core
