@@ -5,7 +5,8 @@ namespace sinewright::app {
 
 namespace {
 
-constexpr const char* kProgramHelp = R"(Sinewright: a bench companion for people who trim sine oscillators.
+constexpr const char* kProgramHelp =
+    R"(Sinewright: a bench companion for people who trim sine oscillators.
 
   sinewright [--source SOURCE] [--rate HZ] [--channel N]
         Opens the window. Without --source it shows what it showed last time,
@@ -93,7 +94,8 @@ Example
   sinewright measure take.wav --channel 2 --band 20:80000 --full-scale 4
 )";
 
-constexpr const char* kCardsHelp = R"(Lists the audio interfaces with an input: host API, name, inputs, the rate they
+constexpr const char* kCardsHelp =
+    R"(Lists the audio interfaces with an input: host API, name, inputs, the rate they
 run at by default and the rates they accept.
 
   sinewright cards [--json]

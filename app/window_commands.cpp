@@ -29,12 +29,14 @@ void nameApplication()
 
 Outcome runWindow(const WindowOptions& options, int& argc, char** argv)
 {
-    const bool hasDisplay = qEnvironmentVariableIsSet("DISPLAY") || qEnvironmentVariableIsSet("WAYLAND_DISPLAY") ||
+    const bool hasDisplay = qEnvironmentVariableIsSet("DISPLAY") ||
+                            qEnvironmentVariableIsSet("WAYLAND_DISPLAY") ||
                             qEnvironmentVariableIsSet("QT_QPA_PLATFORM");
     if (!hasDisplay) {
-        return complaint(ExitStatus::NotWritten,
-                         "the window needs a display and there is none; 'sinewright --picture FILE' and "
-                         "'sinewright measure SOURCE' need none");
+        return complaint(
+            ExitStatus::NotWritten,
+            "the window needs a display and there is none; 'sinewright --picture FILE' and "
+            "'sinewright measure SOURCE' need none");
     }
     const QApplication application(argc, argv);
     nameApplication();

@@ -4,7 +4,6 @@
 #include "app/bench_session.h"
 #include "app/settings.h"
 #include "app/window_wiring.h"
-#include "tests/app/scripted_source.h"
 #include "ui/advice_label.h"
 #include "ui/bottom_line.h"
 #include "ui/figures_column.h"
@@ -16,7 +15,10 @@
 #include <QTemporaryDir>
 #include <QTest>
 
+#include <algorithm>
 #include <optional>
+
+#include "tests/app/scripted_source.h"
 
 namespace sinewright::tests {
 
@@ -24,13 +26,13 @@ namespace sinewright::tests {
 class BenchWindow final
 {
 public:
-    explicit BenchWindow(app::SourceFactory makeSource = app::makeSource, app::CardLister listCards = noCards)
+    explicit BenchWindow(app::SourceFactory makeSource = app::makeSource,
+                         app::CardLister listCards = noCards)
         : m_session(std::move(makeSource), std::move(listCards))
         , m_settings(m_folder.filePath(QStringLiteral("settings.ini")))
         , m_window([this] { return m_session.newestFrame(); })
         , m_wiring(m_window, m_session, m_settings)
-    {
-    }
+    {}
 
     [[nodiscard]] bool start(const app::SourceSpec& source)
     {
@@ -64,7 +66,10 @@ public:
         return texts;
     }
 
-    void press(Qt::Key key, Qt::KeyboardModifiers modifiers = Qt::NoModifier) { QTest::keyClick(&m_window, key, modifiers); }
+    void press(Qt::Key key, Qt::KeyboardModifiers modifiers = Qt::NoModifier)
+    {
+        QTest::keyClick(&m_window, key, modifiers);
+    }
 
     /// The digits of a large figure as they stand in the column at the right; empty while there are none.
     [[nodiscard]] std::optional<double> figure(const char* label)
@@ -93,14 +98,17 @@ public:
         return frame && frame->full && frame->full->thdRatio;
     }
 
-    template<typename T>
+    /// A part of the window by its kind: the one in view, where there are several.
+    template <typename T>
     [[nodiscard]] T& part()
     {
-        T* const found = m_window.findChild<T*>();
-        if (found == nullptr) {
+        const QList<T*> found = m_window.findChildren<T*>();
+        if (found.isEmpty()) {
             qFatal("the window has no such part");
         }
-        return *found;
+        const auto seen = std::find_if(
+            found.begin(), found.end(), [](const T* each) { return each->isVisible(); });
+        return seen != found.end() ? **seen : *found.first();
     }
 
     app::BenchSession& session() { return m_session; }

@@ -19,8 +19,8 @@ struct Ran
     /// One line on stderr that names the program, and nothing on stdout.
     [[nodiscard]] bool isOneComplaint() const
     {
-        return output.isEmpty() && complaint.startsWith("sinewright: ") && complaint.endsWith('\n') &&
-               complaint.count('\n') == 1;
+        return output.isEmpty() && complaint.startsWith("sinewright: ") &&
+               complaint.endsWith('\n') && complaint.count('\n') == 1;
     }
 };
 

@@ -24,14 +24,18 @@ struct KnownTone
     [[nodiscard]] double at(std::size_t i) const
     {
         const double angle = 2.0 * std::numbers::pi * frequencyHz * static_cast<double>(i) / rateHz;
-        const auto ratio = [](double dbc) { return std::pow(10.0, dbc / 20.0); };
-        return amplitudeFs * (std::sin(angle + 0.3) + ratio(secondDbc) * std::sin(2.0 * angle + 1.1) +
-                              ratio(thirdDbc) * std::sin(3.0 * angle - 0.7));
+        const auto ratio = [](double dbc) {
+            return std::pow(10.0, dbc / 20.0);
+        };
+        return amplitudeFs *
+               (std::sin(angle + 0.3) + ratio(secondDbc) * std::sin(2.0 * angle + 1.1) +
+                ratio(thirdDbc) * std::sin(3.0 * angle - 0.7));
     }
 
     [[nodiscard]] double thdDb() const
     {
-        return 10.0 * std::log10(std::pow(10.0, secondDbc / 10.0) + std::pow(10.0, thirdDbc / 10.0));
+        return 10.0 *
+               std::log10(std::pow(10.0, secondDbc / 10.0) + std::pow(10.0, thirdDbc / 10.0));
     }
 
     [[nodiscard]] std::vector<double> samples(double seconds) const
@@ -45,8 +49,11 @@ struct KnownTone
 };
 
 /// Writes interleaved samples through libsndfile. @param format  as SF_INFO::format.
-inline bool
-writeTake(const QString& file, int rateHz, int channels, int format, const std::vector<double>& interleaved)
+inline bool writeTake(const QString& file,
+                      int rateHz,
+                      int channels,
+                      int format,
+                      const std::vector<double>& interleaved)
 {
     SF_INFO info{};
     info.samplerate = rateHz;
@@ -62,7 +69,8 @@ writeTake(const QString& file, int rateHz, int channels, int format, const std::
 }
 
 /// Two channels of equal length, interleaved.
-inline std::vector<double> interleave(const std::vector<double>& left, const std::vector<double>& right)
+inline std::vector<double> interleave(const std::vector<double>& left,
+                                      const std::vector<double>& right)
 {
     std::vector<double> both;
     for (std::size_t i = 0; i < left.size(); ++i) {

@@ -1,7 +1,4 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
-#include "tests/app/program.h"
-#include "tests/app/test_takes.h"
-
 #include <QElapsedTimer>
 #include <QFile>
 #include <QJsonArray>
@@ -14,6 +11,9 @@
 #include <limits>
 #include <random>
 
+#include "tests/app/program.h"
+#include "tests/app/test_takes.h"
+
 using namespace sinewright::tests;
 using namespace Qt::StringLiterals;
 
@@ -23,10 +23,11 @@ constexpr int kWav24 = SF_FORMAT_WAV | SF_FORMAT_PCM_24;
 constexpr int kWavFloat = SF_FORMAT_WAV | SF_FORMAT_FLOAT;
 constexpr int kFlac24 = SF_FORMAT_FLAC | SF_FORMAT_PCM_24;
 
-const QStringList kKeys{u"schema"_s,       u"source"_s,     u"settings"_s,   u"status"_s,      u"warnings"_s,
-                        u"frequencyHz"_s,  u"frequencyStdHz"_s, u"levelDbfs"_s, u"levelVrms"_s, u"dcFs"_s,
-                        u"thdPercent"_s,   u"thdDb"_s,      u"thdRPercent"_s, u"thdnPercent"_s, u"thdnDb"_s,
-                        u"sinadDb"_s,      u"snrDb"_s,      u"noiseDbfs"_s,  u"harmonics"_s,   u"mainsHumDbc"_s};
+const QStringList kKeys{u"schema"_s,      u"source"_s,      u"settings"_s,       u"status"_s,
+                        u"warnings"_s,    u"frequencyHz"_s, u"frequencyStdHz"_s, u"levelDbfs"_s,
+                        u"levelVrms"_s,   u"dcFs"_s,        u"thdPercent"_s,     u"thdDb"_s,
+                        u"thdRPercent"_s, u"thdnPercent"_s, u"thdnDb"_s,         u"sinadDb"_s,
+                        u"snrDb"_s,       u"noiseDbfs"_s,   u"harmonics"_s,      u"mainsHumDbc"_s};
 
 QStringList sorted(QStringList list)
 {
@@ -37,7 +38,8 @@ QStringList sorted(QStringList list)
 /// The one object of a run; empty when stdout holds anything else.
 QJsonObject objectOf(const Ran& ran)
 {
-    return ran.output.count('\n') == 1 ? QJsonDocument::fromJson(ran.output).object() : QJsonObject();
+    return ran.output.count('\n') == 1 ? QJsonDocument::fromJson(ran.output).object()
+                                       : QJsonObject();
 }
 
 double harmonicDbc(const QJsonObject& reading, int order)
@@ -60,7 +62,10 @@ class TestMeasureCommand : public QObject
 
     QTemporaryDir m_folder;
 
-    [[nodiscard]] QString path(const char* name) const { return m_folder.filePath(QString::fromLatin1(name)); }
+    [[nodiscard]] QString path(const char* name) const
+    {
+        return m_folder.filePath(QString::fromLatin1(name));
+    }
 
     static Ran measureJson(const QString& source, const QStringList& options = {})
     {
@@ -89,7 +94,8 @@ private slots:
         const std::vector<double> tenSeconds = tone.samples(10.0);
         QVERIFY(writeTake(path("tone.wav"), 96000, 1, kWav24, tenSeconds));
         const std::vector<double> left = tone.samples(2.0);
-        std::vector<double> right = KnownTone{.frequencyHz = 440.0, .secondDbc = -60.0}.samples(2.0);
+        std::vector<double> right =
+            KnownTone{.frequencyHz = 440.0, .secondDbc = -60.0}.samples(2.0);
         QVERIFY(writeTake(path("stereo.flac"), 96000, 2, kFlac24, interleave(left, right)));
         QVERIFY(writeTake(path("float.wav"), 96000, 1, kWavFloat, left));
         makeBadTakes(left);
@@ -117,7 +123,9 @@ private slots:
         QCOMPARE_LE(std::abs(harmonicDbc(reading, 2) - truth.secondDbc), 0.05);
         QCOMPARE_LE(std::abs(harmonicDbc(reading, 3) - truth.thirdDbc), 0.05);
         QCOMPARE_LE(std::abs(reading[u"thdDb"_s].toDouble() - truth.thdDb()), 0.05);
-        QCOMPARE_LE(std::abs(reading[u"levelDbfs"_s].toDouble() - 20.0 * std::log10(truth.amplitudeFs)), 0.0005);
+        QCOMPARE_LE(
+            std::abs(reading[u"levelDbfs"_s].toDouble() - 20.0 * std::log10(truth.amplitudeFs)),
+            0.0005);
     }
 
     void tenSecondsAt96kHz_takeHalfASecond()
@@ -136,8 +144,17 @@ private slots:
 
     void json_hasExactlyTheKeysOfTheContract()
     {
-        const Ran ran = measureJson(path("stereo.flac"), {u"--channel"_s, u"2"_s, u"--start"_s, u"0.5"_s, u"--seconds"_s,
-                                                          u"1"_s, u"--band"_s, u"10:90000"_s, u"--harmonics"_s, u"4"_s});
+        const Ran ran = measureJson(path("stereo.flac"),
+                                    {u"--channel"_s,
+                                     u"2"_s,
+                                     u"--start"_s,
+                                     u"0.5"_s,
+                                     u"--seconds"_s,
+                                     u"1"_s,
+                                     u"--band"_s,
+                                     u"10:90000"_s,
+                                     u"--harmonics"_s,
+                                     u"4"_s});
         QCOMPARE(ran.exitCode, 0);
         const QJsonObject reading = objectOf(ran);
         QCOMPARE(reading.keys(), sorted(kKeys));
@@ -152,7 +169,13 @@ private slots:
         }
         QCOMPARE(reading[u"schema"_s].toString(), u"sinewright.reading/1"_s);
         const QJsonObject source = reading[u"source"_s].toObject();
-        QCOMPARE(source.keys(), sorted({u"kind"_s, u"name"_s, u"sampleRateHz"_s, u"channel"_s, u"startS"_s, u"lengthS"_s}));
+        QCOMPARE(source.keys(),
+                 sorted({u"kind"_s,
+                         u"name"_s,
+                         u"sampleRateHz"_s,
+                         u"channel"_s,
+                         u"startS"_s,
+                         u"lengthS"_s}));
         QCOMPARE(source[u"kind"_s].toString(), u"take"_s);
         QCOMPARE(source[u"name"_s].toString(), path("stereo.flac"));
         QCOMPARE(source[u"sampleRateHz"_s].toDouble(), 96000.0);
@@ -160,8 +183,10 @@ private slots:
         QCOMPARE(source[u"startS"_s].toDouble(), 0.5);
         QCOMPARE(source[u"lengthS"_s].toDouble(), 1.0);
         const QJsonObject settings = reading[u"settings"_s].toObject();
-        QCOMPARE(settings.keys(), sorted({u"bandHz"_s, u"harmonicCount"_s, u"weighting"_s, u"fullScaleVrms"_s}));
-        QCOMPARE(settings[u"bandHz"_s].toArray(), (QJsonArray{10.0, 48000.0})); // limited to half the rate
+        QCOMPARE(settings.keys(),
+                 sorted({u"bandHz"_s, u"harmonicCount"_s, u"weighting"_s, u"fullScaleVrms"_s}));
+        QCOMPARE(settings[u"bandHz"_s].toArray(),
+                 (QJsonArray{10.0, 48000.0})); // limited to half the rate
         QCOMPARE(settings[u"harmonicCount"_s].toInt(), 4);
         QCOMPARE(settings[u"weighting"_s].toString(), u"none"_s);
         QVERIFY(settings[u"fullScaleVrms"_s].isNull());
@@ -169,7 +194,12 @@ private slots:
         const QJsonArray harmonics = reading[u"harmonics"_s].toArray();
         QCOMPARE(harmonics.size(), 3);
         QCOMPARE(harmonics[0].toObject().keys(),
-                 sorted({u"order"_s, u"frequencyHz"_s, u"dbc"_s, u"percent"_s, u"phaseDeg"_s, u"inBand"_s}));
+                 sorted({u"order"_s,
+                         u"frequencyHz"_s,
+                         u"dbc"_s,
+                         u"percent"_s,
+                         u"phaseDeg"_s,
+                         u"inBand"_s}));
         QCOMPARE_LE(std::abs(reading[u"frequencyHz"_s].toDouble() - 440.0), 1e-3);
     }
 
@@ -185,7 +215,8 @@ private slots:
 
     void fullScale_givesVolts()
     {
-        const QJsonObject reading = objectOf(measureJson(path("tone.wav"), {u"--full-scale"_s, u"4"_s}));
+        const QJsonObject reading =
+            objectOf(measureJson(path("tone.wav"), {u"--full-scale"_s, u"4"_s}));
         // Half of full scale of 4 V rms; the level is good to 0.0005 dB, 6e-5 of it.
         QCOMPARE_LE(std::abs(reading[u"levelVrms"_s].toDouble() - 2.0), 2.0 * 6e-5);
         QCOMPARE(reading[u"settings"_s].toObject()[u"fullScaleVrms"_s].toDouble(), 4.0);
@@ -195,7 +226,8 @@ private slots:
     void weightings_changeTheNoise()
     {
         const auto noise = [this](const char* weighting) {
-            return objectOf(measureJson(path("noisy.wav"), {u"--weighting"_s, QString::fromLatin1(weighting)}));
+            return objectOf(
+                measureJson(path("noisy.wav"), {u"--weighting"_s, QString::fromLatin1(weighting)}));
         };
         QCOMPARE(noise("a")[u"settings"_s].toObject()[u"weighting"_s].toString(), u"a"_s);
         QVERIFY(noise("a")[u"noiseDbfs"_s].toDouble() < noise("none")[u"noiseDbfs"_s].toDouble());
@@ -208,13 +240,19 @@ private slots:
         QCOMPARE(ran.exitCode, 0);
         QCOMPARE(ran.complaint, QByteArray());
         const QString table = QString::fromUtf8(ran.output);
-        QVERIFY(std::all_of(table.begin(), table.end(), [](QChar c) { return c.unicode() < 0x80; }));
+        QVERIFY(
+            std::all_of(table.begin(), table.end(), [](QChar c) { return c.unicode() < 0x80; }));
         QVERIFY(table.startsWith(u"tone.wav, channel 1, 96 kHz, 10.000 s from 0.000 s\n"_s));
-        QVERIFY2(table.contains(QRegularExpression(u"frequency +1000\\.000 Hz"_s)), qPrintable(table));
-        QVERIFY2(table.contains(QRegularExpression(u"level +-6\\.02\\d dBFS"_s)), qPrintable(table));
-        QVERIFY2(table.contains(QRegularExpression(u"THD +0\\.0105 % +-79\\.59 dB"_s)), qPrintable(table));
-        QVERIFY2(table.contains(QRegularExpression(u" 2 +2000\\.00 Hz +-80\\.0\\d dBc"_s)), qPrintable(table));
-        QVERIFY2(table.contains(QRegularExpression(u" 3 +3000\\.00 Hz +-90\\.0\\d dBc"_s)), qPrintable(table));
+        QVERIFY2(table.contains(QRegularExpression(u"frequency +1000\\.000 Hz"_s)),
+                 qPrintable(table));
+        QVERIFY2(table.contains(QRegularExpression(u"level +-6\\.02\\d dBFS"_s)),
+                 qPrintable(table));
+        QVERIFY2(table.contains(QRegularExpression(u"THD +0\\.0105 % +-79\\.59 dB"_s)),
+                 qPrintable(table));
+        QVERIFY2(table.contains(QRegularExpression(u" 2 +2000\\.00 Hz +-80\\.0\\d dBc"_s)),
+                 qPrintable(table));
+        QVERIFY2(table.contains(QRegularExpression(u" 3 +3000\\.00 Hz +-90\\.0\\d dBc"_s)),
+                 qPrintable(table));
         QVERIFY(!table.contains(u"nan"_s) && !table.contains(u"inf"_s));
     }
 
@@ -228,7 +266,8 @@ private slots:
         QCOMPARE(reading[u"source"_s][u"lengthS"_s].toDouble(), 2.0);
         QVERIFY(reading[u"thdPercent"_s].toDouble() > 0.0);
         // Seeded: the same words give the same figures to the last digit.
-        QCOMPARE(measureJson(u"demo"_s, {u"--rate"_s, u"48000"_s, u"--seconds"_s, u"2"_s}).output, ran.output);
+        QCOMPARE(measureJson(u"demo"_s, {u"--rate"_s, u"48000"_s, u"--seconds"_s, u"2"_s}).output,
+                 ran.output);
     }
 
     void unusableSignal_isExitOneWithNullFigures_data()
@@ -250,7 +289,8 @@ private slots:
         const QJsonObject reading = objectOf(ran);
         QCOMPARE(reading.keys(), sorted(kKeys));
         QCOMPARE(reading[u"status"_s].toString(), status);
-        for (const char* key : {"frequencyHz", "levelDbfs", "thdPercent", "thdDb", "thdnDb", "sinadDb", "snrDb"}) {
+        for (const char* key :
+             {"frequencyHz", "levelDbfs", "thdPercent", "thdDb", "thdnDb", "sinadDb", "snrDb"}) {
             QVERIFY2(reading[QString::fromLatin1(key)].isNull(), key);
         }
         const Ran table = runProgram({u"measure"_s, file});
@@ -283,8 +323,10 @@ private slots:
         QTest::newRow("a folder") << QStringList{m_folder.path()} << m_folder.path();
         QTest::newRow("channel the take has not")
             << QStringList{path("stereo.flac"), u"--channel"_s, u"3"_s} << u"channel 3"_s;
-        QTest::newRow("start behind the end") << QStringList{path("stereo.flac"), u"--start"_s, u"99"_s} << u"stereo.flac"_s;
-        QTest::newRow("channel the demo has not") << QStringList{u"demo"_s, u"--channel"_s, u"2"_s} << u"channel 2"_s;
+        QTest::newRow("start behind the end")
+            << QStringList{path("stereo.flac"), u"--start"_s, u"99"_s} << u"stereo.flac"_s;
+        QTest::newRow("channel the demo has not")
+            << QStringList{u"demo"_s, u"--channel"_s, u"2"_s} << u"channel 2"_s;
     }
 
     void badSources_areExitThreeInOneLine()
@@ -303,7 +345,8 @@ private slots:
         const Ran ran = runProgram({u"measure"_s, path("secret.wav")}, {.asPlainUser = true});
         QVERIFY2(ran.isOneComplaint(), ran.complaint);
         QCOMPARE(ran.exitCode, 3);
-        QVERIFY2(ran.complaint.contains("secret.wav") && ran.complaint.contains("permission"), ran.complaint.constData());
+        QVERIFY2(ran.complaint.contains("secret.wav") && ran.complaint.contains("permission"),
+                 ran.complaint.constData());
     }
 
     void wrongUsage_isExitTwoInOneLine_data()
@@ -330,7 +373,8 @@ private slots:
     {
         QTest::addColumn<QStringList>("words");
         QTest::newRow("measure") << QStringList{u"measure"_s, path("float.wav")};
-        QTest::newRow("measure --json") << QStringList{u"measure"_s, path("float.wav"), u"--json"_s};
+        QTest::newRow("measure --json")
+            << QStringList{u"measure"_s, path("float.wav"), u"--json"_s};
         QTest::newRow("help") << QStringList{u"--help"_s};
     }
 
@@ -344,7 +388,9 @@ private slots:
 
     void helpAndVersion_areExitZero()
     {
-        for (const QStringList& words : {QStringList{u"--help"_s}, {u"measure"_s, u"--help"_s}, {u"cards"_s, u"--help"_s},
+        for (const QStringList& words : {QStringList{u"--help"_s},
+                                         {u"measure"_s, u"--help"_s},
+                                         {u"cards"_s, u"--help"_s},
                                          {u"--version"_s}}) {
             const Ran ran = runProgram(words);
             QCOMPARE(ran.exitCode, 0);

@@ -1,9 +1,4 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
-#include "tests/app/bench_window.h"
-#include "tests/app/program.h"
-#include "tests/app/test_takes.h"
-#include "tests/support/virtual_card.h"
-
 #include <QJsonArray>
 #include <QJsonDocument>
 #include <QJsonObject>
@@ -11,6 +6,11 @@
 #include <QTest>
 
 #include <cmath>
+
+#include "tests/app/bench_window.h"
+#include "tests/app/program.h"
+#include "tests/app/test_takes.h"
+#include "tests/support/virtual_card.h"
 
 using namespace sinewright;
 using namespace sinewright::tests;
@@ -40,7 +40,8 @@ private slots:
         }
         m_card.useInThisProcess();
         QVERIFY2(m_card.start(), qPrintable(m_card.whatFailed()));
-        std::vector<double> other = KnownTone{.frequencyHz = 2500.0, .secondDbc = -60.0}.samples(60.0);
+        std::vector<double> other =
+            KnownTone{.frequencyHz = 2500.0, .secondDbc = -60.0}.samples(60.0);
         QVERIFY(writeTake(m_folder.filePath(u"played.wav"_s),
                           96000,
                           2,
@@ -52,7 +53,8 @@ private slots:
     {
         QTest::failOnWarning(QRegularExpression(u".?"_s));
         if (!m_card.isPlaying()) {
-            QVERIFY2(m_card.play(m_folder.filePath(u"played.wav"_s)), qPrintable(m_card.whatFailed()));
+            QVERIFY2(m_card.play(m_folder.filePath(u"played.wav"_s)),
+                     qPrintable(m_card.whatFailed()));
         }
     }
 
@@ -71,9 +73,14 @@ private slots:
         QFETCH(double, frequencyHz);
         QFETCH(double, secondDbc);
         const KnownTone truth{.frequencyHz = frequencyHz, .secondDbc = secondDbc};
-        const Ran ran = runProgram(
-            QStringList{u"measure"_s, u"card:pulse"_s, u"--rate"_s, u"96000"_s, u"--seconds"_s, u"2"_s, u"--json"_s} +
-            options);
+        const Ran ran = runProgram(QStringList{u"measure"_s,
+                                               u"card:pulse"_s,
+                                               u"--rate"_s,
+                                               u"96000"_s,
+                                               u"--seconds"_s,
+                                               u"2"_s,
+                                               u"--json"_s} +
+                                   options);
         QCOMPARE(ran.complaint, QByteArray());
         QCOMPARE(ran.exitCode, 0);
         const QJsonObject reading = QJsonDocument::fromJson(ran.output).object();
@@ -91,7 +98,8 @@ private slots:
         QVERIFY(bench.start({.kind = ui::SourceKind::Card, .name = u"pulse"_s, .rateHz = 96000.0}));
         const auto isSteady = [&bench] {
             const auto frame = bench.window().shownFrame();
-            return frame && frame->full && frame->full->status == core::ReadingStatus::Ok && frame->full->warnings.empty();
+            return frame && frame->full && frame->full->status == core::ReadingStatus::Ok &&
+                   frame->full->warnings.empty();
         };
         QTRY_VERIFY_WITH_TIMEOUT(isSteady(), kPatienceMs);
         const core::Reading reading = *bench.window().shownFrame()->full;
@@ -109,11 +117,14 @@ private slots:
         const Ran table = runProgram({u"cards"_s});
         QCOMPARE(table.exitCode, 0);
         QCOMPARE(table.complaint, QByteArray());
-        QVERIFY2(QString::fromUtf8(table.output).contains(QRegularExpression(u"ALSA +pulse\\b.*96"_s)), table.output);
+        QVERIFY2(
+            QString::fromUtf8(table.output).contains(QRegularExpression(u"ALSA +pulse\\b.*96"_s)),
+            table.output);
         const Ran json = runProgram({u"cards"_s, u"--json"_s});
         const QJsonArray cards = QJsonDocument::fromJson(json.output)[u"cards"_s].toArray();
         QVERIFY(std::any_of(cards.begin(), cards.end(), [](const QJsonValue& card) {
-            return card[u"name"_s].toString() == u"pulse" && card[u"ratesHz"_s].toArray().contains(96000.0);
+            return card[u"name"_s].toString() == u"pulse" &&
+                   card[u"ratesHz"_s].toArray().contains(96000.0);
         }));
     }
 
