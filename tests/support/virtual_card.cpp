@@ -11,6 +11,14 @@
 
 #include <sndfile.h>
 
+#ifdef __SANITIZE_THREAD__
+/// A fixture starts processes from a program that has threads; the sanitizer gives up there unless told otherwise.
+extern "C" const char* __tsan_default_options() // NOLINT(bugprone-reserved-identifier)
+{
+    return "die_after_fork=0";
+}
+#endif
+
 namespace sinewright::tests {
 
 namespace {
