@@ -10,6 +10,7 @@
 #include <csignal>
 
 #include <sndfile.h>
+#include <sys/prctl.h>
 
 #ifdef __SANITIZE_THREAD__
 /// A fixture starts processes from a program that has threads; the sanitizer gives up there unless told otherwise.
@@ -46,6 +47,12 @@ void signalTo(const QProcess& process, int signal)
     if (const qint64 id = process.processId(); id > 0) {
         ::kill(static_cast<pid_t>(id), signal);
     }
+}
+
+/// A test program that crashes must not leave a server or a player behind.
+void endWithThisProcess(QProcess& process)
+{
+    process.setChildProcessModifier([] { ::prctl(PR_SET_PDEATHSIG, SIGKILL); });
 }
 
 void end(QProcess& process)
@@ -110,6 +117,7 @@ bool VirtualCard::answers() const
 
 bool VirtualCard::start()
 {
+    endWithThisProcess(m_server);
     m_server.setProcessChannelMode(QProcess::MergedChannels);
     m_server.start(script(), {QStringLiteral("serve"), m_folder.path()});
     const QDeadlineTimer deadline(kAnswerPatienceMs);
@@ -145,6 +153,7 @@ bool VirtualCard::play(const QString& file)
 {
     stopPlaying();
     m_player.setProcessEnvironment(environment());
+    endWithThisProcess(m_player);
     m_player.setProcessChannelMode(QProcess::MergedChannels);
     m_player.start(QStringLiteral("paplay"), {file});
     if (!m_player.waitForStarted()) {
