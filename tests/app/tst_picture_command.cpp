@@ -1,6 +1,5 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "app/picture.h"
-#include "tests/app/program.h"
 
 #include <QDir>
 #include <QFileInfo>
@@ -9,6 +8,8 @@
 #include <QTest>
 
 #include <set>
+
+#include "tests/app/program.h"
 
 using namespace sinewright;
 using namespace sinewright::tests;
@@ -19,7 +20,15 @@ namespace {
 /// A picture of a second of the demo at its cheapest.
 QStringList pictureWords(const QString& file, const QStringList& more = {})
 {
-    return QStringList{u"--picture"_s, file, u"--rate"_s, u"48000"_s, u"--source"_s, u"demo"_s, u"--after"_s, u"1"_s} + more;
+    return QStringList{u"--picture"_s,
+                       file,
+                       u"--rate"_s,
+                       u"48000"_s,
+                       u"--source"_s,
+                       u"demo"_s,
+                       u"--after"_s,
+                       u"1"_s} +
+           more;
 }
 
 } // namespace
@@ -31,7 +40,10 @@ class TestPictureCommand : public QObject
 
     QTemporaryDir m_folder;
 
-    [[nodiscard]] QString path(const char* name) const { return m_folder.filePath(QString::fromLatin1(name)); }
+    [[nodiscard]] QString path(const char* name) const
+    {
+        return m_folder.filePath(QString::fromLatin1(name));
+    }
 
 private slots:
     void initTestCase()
@@ -50,9 +62,12 @@ private slots:
         QTest::addColumn<QSize>("least");
         QTest::addColumn<bool>("isDark");
         QTest::newRow("as it is") << QStringList() << QSize(1280, 800) << false;
-        QTest::newRow("dusk, twice as fine") << QStringList{u"--theme"_s, u"dusk"_s, u"--scale"_s, u"2"_s} << QSize(2560, 1600) << true;
+        QTest::newRow("dusk, twice as fine")
+            << QStringList{u"--theme"_s, u"dusk"_s, u"--scale"_s, u"2"_s} << QSize(2560, 1600)
+            << true;
         QTest::newRow("larger, another page")
-            << QStringList{u"--size"_s, u"1920x1080"_s, u"--page"_s, u"hook-up"_s} << QSize(1920, 1080) << false;
+            << QStringList{u"--size"_s, u"1920x1080"_s, u"--page"_s, u"hook-up"_s}
+            << QSize(1920, 1080) << false;
     }
 
     void picture_showsTheWindowAndPrintsAReading()
@@ -64,8 +79,11 @@ private slots:
         const Ran ran = runProgram(pictureWords(file, options));
         QCOMPARE(ran.complaint, QByteArray());
         QCOMPARE(ran.exitCode, 0);
-        QVERIFY2(QString::fromUtf8(ran.output).contains(QRegularExpression(u"^1183\\.\\d+ Hz, -\\d\\.\\d+ dBFS, THD 0\\.\\d+ %, THD\\+N 0\\.\\d+ %\\n$"_s)),
-                 ran.output);
+        QVERIFY2(
+            QString::fromUtf8(ran.output)
+                .contains(QRegularExpression(
+                    u"^1183\\.\\d+ Hz, -\\d\\.\\d+ dBFS, THD 0\\.\\d+ %, THD\\+N 0\\.\\d+ %\\n$"_s)),
+            ran.output);
         const QImage picture(file);
         QCOMPARE_GE(picture.width(), least.width());
         QCOMPARE_GT(picture.height(), least.height()); // the caption comes below
@@ -82,7 +100,8 @@ private slots:
 
     void settingsOfTheUser_areLeftAlone()
     {
-        QCOMPARE(runProgram(pictureWords(path("alone.png"), {u"--theme"_s, u"dusk"_s})).exitCode, 0);
+        QCOMPARE(runProgram(pictureWords(path("alone.png"), {u"--theme"_s, u"dusk"_s})).exitCode,
+                 0);
         QVERIFY(!QFileInfo::exists(path("config/sinewright")));
     }
 
@@ -90,17 +109,22 @@ private slots:
     {
         const Ran ran = runProgram(pictureWords(path("load.png"), {u"--report-load"_s}));
         QCOMPARE(ran.exitCode, 0);
-        QVERIFY2(QString::fromUtf8(ran.output)
-                     .contains(QRegularExpression(
-                         u"\\nload of one core over [\\d.]+ s: analysis [\\d.]+ %, drawing [\\d.]+ %, total [\\d.]+ %\\n$"_s)),
-                 ran.output);
+        QVERIFY2(
+            QString::fromUtf8(ran.output)
+                .contains(QRegularExpression(
+                    u"\\nload of one core over [\\d.]+ s: analysis [\\d.]+ %, drawing [\\d.]+ %, total [\\d.]+ %\\n$"_s)),
+            ran.output);
     }
 
     void trimmerStops_areGoneThrough()
     {
         const auto levelAfter = [this](const QString& stops) {
-            const Ran ran = runProgram(pictureWords(path("stops.png"), {u"--trimmer"_s, stops, u"--after"_s, u"4"_s}));
-            return QString::fromUtf8(ran.output).section(u", "_s, 1, 1).section(u' ', 0, 0).toDouble();
+            const Ran ran = runProgram(
+                pictureWords(path("stops.png"), {u"--trimmer"_s, stops, u"--after"_s, u"4"_s}));
+            return QString::fromUtf8(ran.output)
+                .section(u", "_s, 1, 1)
+                .section(u' ', 0, 0)
+                .toDouble();
         };
         // The level follows the trimmer.
         QVERIFY(levelAfter(u"350,330"_s) < levelAfter(u"330,350"_s) - 0.3);
@@ -127,7 +151,8 @@ private slots:
 
     void sourceThatCannotBeOpened_isExitThree()
     {
-        const Ran ran = runProgram({u"--picture"_s, path("none.png"), u"--source"_s, path("missing.wav")});
+        const Ran ran =
+            runProgram({u"--picture"_s, path("none.png"), u"--source"_s, path("missing.wav")});
         QVERIFY2(ran.isOneComplaint(), ran.complaint + ran.output);
         QCOMPARE(ran.exitCode, 3);
         QVERIFY(!QFileInfo::exists(path("none.png")));
