@@ -30,6 +30,7 @@ public:
                           CardLister listCards = audio::listCards,
                           QObject* parent = nullptr);
     ~BenchSession() override;
+    Q_DISABLE_COPY_MOVE(BenchSession)
 
     /// Changes over to another source; the answer is a statusChanged(). From here on newestFrame() gives frames of this
     /// source alone.

@@ -38,6 +38,7 @@ public:
                  std::shared_ptr<const audio::DemoTrimmer> trimmer,
                  std::shared_ptr<const std::atomic<quint64>> newestSerial);
     ~DeviceWorker() override;
+    Q_DISABLE_COPY_MOVE(DeviceWorker)
 
     void open(const OpenOrder& order);
     void close();

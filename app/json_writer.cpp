@@ -87,7 +87,7 @@ JsonWriter& JsonWriter::number(std::optional<double> value)
         return raw("null");
     }
     std::array<char, 32> digits{}; // the longest shortest form of a double has 24 characters
-    const auto end = std::to_chars(digits.data(), digits.data() + digits.size(), *value).ptr;
+    const auto* const end = std::to_chars(digits.data(), digits.data() + digits.size(), *value).ptr;
     return raw(std::string_view(digits.data(), static_cast<std::size_t>(end - digits.data())));
 }
 

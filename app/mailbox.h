@@ -20,8 +20,11 @@ class Mailbox final
 {
 public:
     Mailbox() = default;
+    ~Mailbox() = default;
     Mailbox(const Mailbox&) = delete;
     Mailbox& operator=(const Mailbox&) = delete;
+    Mailbox(Mailbox&&) = delete;
+    Mailbox& operator=(Mailbox&&) = delete;
 
     /// Writer: this is the newest now.
     void put(T value)

@@ -10,8 +10,8 @@
 
 #include <cerrno>
 #include <cstdio>
-#include <cstring>
 #include <string>
+#include <system_error>
 #include <variant>
 
 namespace {
@@ -28,8 +28,8 @@ int finish(const Outcome& outcome)
                            std::fflush(stdout) == 0;
     if (!isWritten) {
         status = ExitStatus::NotWritten;
-        complaint = std::string("cannot write to standard output: ") + std::strerror(errno) +
-                    "; check where it is sent to";
+        complaint = std::string("cannot write to standard output: ") +
+                    std::generic_category().message(errno) + "; check where it is sent to";
     }
     if (!complaint.empty()) {
         std::fprintf(stderr, "sinewright: %s\n", complaint.c_str());

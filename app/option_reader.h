@@ -17,7 +17,7 @@ namespace sinewright::app {
 /// An option as a command knows it.
 struct OptionName
 {
-    const char* name;       ///< without the dashes
+    const char* name = "";  ///< without the dashes
     bool takesValue = true; ///< false: it is there or it is not
 };
 

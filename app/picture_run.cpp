@@ -27,6 +27,9 @@ constexpr std::chrono::milliseconds kLookEvery{50};
 /// The load is counted from here on: fonts, plans and first layouts are behind [s of signal].
 constexpr double kWarmS = 2.0;
 
+/// Digits change a few times a second at the most: after so long they may show what the picture's caption says.
+constexpr std::chrono::milliseconds kHoldFor{500};
+
 /// A source that gives no frame for so long has failed [s].
 constexpr double kPatienceS = 15.0;
 
@@ -43,7 +46,7 @@ QString pageTitle(ui::Page page)
 PictureRun::PictureRun(const PictureOptions& options, const QString& settingsFile)
     : m_options(options)
     , m_settings(settingsFile)
-    , m_window([this] { return m_session.newestFrame(); })
+    , m_window([this] { return m_held ? m_held : m_session.newestFrame(); })
     , m_wiring(m_window, m_session, m_settings)
 {
     ui::ViewSettings view;
@@ -80,7 +83,10 @@ void PictureRun::look()
     const bool isOver = condition == Condition::Failed || condition == Condition::Ended;
     const bool isLate = steadySeconds() - m_startedS > m_options.afterS + kPatienceS;
     if (shownS >= m_options.afterS || isOver || isLate) {
-        m_loop.quit();
+        m_looking.stop();
+        m_loadTo = loadNow();
+        m_held = frame;
+        QTimer::singleShot(kHoldFor, &m_loop, &QEventLoop::quit);
     }
 }
 
@@ -123,15 +129,14 @@ std::string PictureRun::loadReport(const LoadMark& from, const LoadMark& to) con
 
 Outcome PictureRun::picture()
 {
-    const LoadMark loadTo = loadNow();
-    m_looking.stop();
     const SessionStatus status = m_session.status();
-    const auto frame = m_session.newestFrame();
+    const auto frame = m_held;
     if (status.condition == Condition::Failed || !frame) {
         const QString why = status.message.isEmpty() ? u"it gave no signal"_s : status.message;
         return complaint(ExitStatus::NoSource, why.toStdString());
     }
-    // The display timer has had the frame by now or gets it in the next turn.
+    // Shows the held frame once more, with all its digits.
+    m_window.setViewSettings(m_settings.values().view);
     QGuiApplication::processEvents();
     const QImage image =
         m_wiring.picture(m_window.sheet(), pageTitle(m_options.page), QDateTime::currentDateTime());
@@ -142,7 +147,7 @@ Outcome PictureRun::picture()
     Outcome outcome;
     outcome.output = readingAsLine(reading) + '\n';
     if (m_options.reportsLoad) {
-        outcome.output += loadReport(m_loadFrom, loadTo);
+        outcome.output += loadReport(m_loadFrom, m_loadTo);
     }
     outcome.status =
         reading.status == core::ReadingStatus::Ok ? ExitStatus::Good : ExitStatus::Unusable;

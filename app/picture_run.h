@@ -11,6 +11,7 @@
 #include <QEventLoop>
 #include <QTimer>
 
+#include <memory>
 #include <string>
 
 namespace sinewright::app {
@@ -48,11 +49,13 @@ private:
     // [gui] only
     BenchSession m_session;
     Settings m_settings;
-    ui::MainWindow m_window;
+    std::shared_ptr<const core::Frame> m_held; ///< what the picture will show, once it is chosen
+    ui::MainWindow m_window; // asks for m_held
     WindowWiring m_wiring;
     QEventLoop m_loop;
     QTimer m_looking;
     LoadMark m_loadFrom;
+    LoadMark m_loadTo;
     bool m_isWarm = false;
     double m_startedS = 0.0;
 };

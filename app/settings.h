@@ -36,6 +36,7 @@ public:
     explicit Settings(const QString& file = {}, QObject* parent = nullptr);
     /// Writes what is not written yet.
     ~Settings() override;
+    Q_DISABLE_COPY_MOVE(Settings)
 
     [[nodiscard]] const Remembered& values() const { return m_values; }
 

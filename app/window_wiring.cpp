@@ -182,12 +182,12 @@ void WindowWiring::noteCards(const std::vector<audio::CardInfo>& cards)
 
 QString WindowWiring::pictureFolder()
 {
-    const QString remembered = m_settings.values().pictureFolder;
+    QString remembered = m_settings.values().pictureFolder;
     if (!remembered.isEmpty() && QFileInfo(remembered).isDir()) {
         return remembered;
     }
     const QString usual = QStandardPaths::writableLocation(QStandardPaths::PicturesLocation);
-    const QString chosen =
+    QString chosen =
         QFileDialog::getExistingDirectory(&m_window, tr("Folder for pictures of the bench"), usual);
     if (!chosen.isEmpty()) {
         m_settings.setPictureFolder(chosen);
