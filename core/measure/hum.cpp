@@ -1,10 +1,11 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "core/measure/hum.h"
 
+#include "core/signal/noise_level.h"
+
 #include <algorithm>
 #include <array>
 #include <cmath>
-#include <numbers>
 #include <vector>
 
 namespace sinewright::core {
@@ -20,8 +21,6 @@ constexpr double kLobeBins = 2.0;         ///< half width of a line seen through
 constexpr double kBackgroundBins = 40.0;  ///< looked at on each side
 constexpr std::size_t kFewestBackground = 16; ///< powers, below which nothing is said
 constexpr double kCorrelatedBins = 1.5;       ///< noise bandwidth of the raised cosine [bins]
-constexpr double kMedianEfficiency =
-    0.48; ///< a median of n exponential powers is as good as a mean of 0.48 n
 
 struct Place
 {
@@ -67,10 +66,9 @@ Background backgroundOf(const ResidualSpectrum& spectrum, const Place& place)
     if (powers.size() < kFewestBackground) {
         return {};
     }
-    const auto middle = powers.begin() + static_cast<std::ptrdiff_t>(powers.size() / 2);
-    std::nth_element(powers.begin(), middle, powers.end());
-    return {*middle / std::numbers::ln2,
-            static_cast<double>(powers.size()) * kMedianEfficiency / kCorrelatedBins};
+    const double independent =
+        static_cast<double>(powers.size()) * kMedianEfficiency / kCorrelatedBins;
+    return {meanFromMedian(powers), independent};
 }
 
 } // namespace
@@ -88,8 +86,7 @@ std::optional<HumLine> findHum(const ResidualSpectrum& spectrum, double resoluti
         if (!(background.power > 0.0)) {
             continue;
         }
-        const double n = background.independent;
-        const double statistical = n * (std::pow(kFalseAlarm / cells, -1.0 / n) - 1.0);
+        const double statistical = chanceRatio(kFalseAlarm / cells, background.independent);
         const double threshold = background.power * std::max(kLeastProminence, statistical);
         for (std::size_t index = spectrum.indexAt(place.lowBins);
              index <= spectrum.indexAt(place.highBins);

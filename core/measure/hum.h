@@ -25,8 +25,6 @@ struct HumLine
 /// @param resolutionHz  one over the stretch's length [Hz].
 /// @return  The strongest line of the family that holds it; empty when none counts or the stretch is too short to
 ///          tell.
-/// @source  Threshold derived here: with the background m taken from n independent powers, noise exceeds T m with
-///          probability (1 + T / n)^-n.
 [[nodiscard]] std::optional<HumLine> findHum(const ResidualSpectrum& spectrum, double resolutionHz);
 
 } // namespace sinewright::core

@@ -54,8 +54,17 @@ public:
     /// Largest powerFs2() of all.
     [[nodiscard]] double largestPowerFs2() const;
 
-    /// Expected mean square an index of the noise about a place: from the median of the nearest indices that no line
-    /// occupies. 0 when there are none.
+    /// What noise is expected to put into one index, from the median of nearby indices that no line occupies.
+    struct Density
+    {
+        double powerFs2 = 0.0;    ///< mean square an index; 0 when there are no such indices
+        double independent = 0.0; ///< of how many independent powers the mean would be as good
+    };
+
+    /// About a place, from the nearest indices within a range [bins].
+    [[nodiscard]] Density localDensity(double bins, double lowBins, double highBins) const;
+
+    /// About a place, from the nearest indices wherever they lie.
     [[nodiscard]] double localPowerFs2(double bins) const;
 
     /// Median of the in-band power an index, brought to the mean of noise.
