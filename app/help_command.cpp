@@ -20,7 +20,7 @@ constexpr const char* kProgramHelp = R"(Sinewright: a bench companion for people
         alone.
 
 SOURCE is one of
-  demo               a lamp-stabilised oscillator that is computed, with a trimmer
+  demo               a computed lamp-stabilised oscillator with a trimmer
   card               the default input of the audio interface
   card:NAME          another input by its name or a part of it
   card:HOST::NAME    the same, only among the inputs of one host API

@@ -37,7 +37,6 @@ CaptureStream::CaptureStream(std::unique_ptr<PortAudioSession> session,
     : m_session(std::move(session))
     , m_label(std::move(label))
     , m_format(format)
-    , m_tap(format.channels)
 {}
 
 core::Result<std::shared_ptr<CaptureStream>> CaptureStream::open(const CardChoice& choice)

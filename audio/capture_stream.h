@@ -25,6 +25,8 @@ public:
     ~CaptureStream();
     CaptureStream(const CaptureStream&) = delete;
     CaptureStream& operator=(const CaptureStream&) = delete;
+    CaptureStream(CaptureStream&&) = delete;
+    CaptureStream& operator=(CaptureStream&&) = delete;
 
     /// @error DeviceFailed
     [[nodiscard]] core::Result<void> start();

@@ -10,12 +10,12 @@
 namespace sinewright::audio {
 
 void CaptureTap::open(SampleRing& ring,
-                      core::SampleRate rate,
+                      const StreamFormat& format,
                       std::optional<Clock::time_point> lastHeard)
 {
-    assert(ring.channels() == m_channels);
+    assert(ring.channels() == format.channels);
     m_ring = &ring;
-    m_rateHz = rate.hz;
+    m_format = format;
     m_isResuming = lastHeard.has_value();
     m_lastHeard.store(lastHeard.value_or(Clock::now()).time_since_epoch().count());
     m_gate.store(Gate::Free, std::memory_order_release);
@@ -58,7 +58,7 @@ void CaptureTap::countGap(Clock::time_point now, std::uint64_t frames, bool hasO
     // Nobody tells how many are missing. The last samples were as old when they came as these are now, so that the time
     // between is that of the missing frames and of these. A gap is never shorter than one frame.
     const std::chrono::duration<double> since = now - lastHeard();
-    const double missing = since.count() * m_rateHz - static_cast<double>(frames);
+    const double missing = since.count() * m_format.rate.hz - static_cast<double>(frames);
     m_ring->addLoss(static_cast<std::uint64_t>(std::max(missing, 1.0)));
     m_isResuming = false;
 }
@@ -66,7 +66,7 @@ void CaptureTap::countGap(Clock::time_point now, std::uint64_t frames, bool hasO
 void CaptureTap::countSilence(const float* interleaved, std::uint64_t frames) noexcept
 {
     // Ends at once where there is a signal.
-    const auto samples = static_cast<std::ptrdiff_t>(frames) * m_channels;
+    const auto samples = static_cast<std::ptrdiff_t>(frames) * m_format.channels;
     const bool isSilent =
         std::all_of(interleaved, interleaved + samples, [](float s) { return s == 0.0F; });
     m_silentFrames.store(isSilent ? m_silentFrames.load(std::memory_order_relaxed) + frames : 0);

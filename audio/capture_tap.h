@@ -1,7 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include "core/units.h"
+#include "audio/source.h"
 
 #include <portaudio.h>
 
@@ -12,8 +12,6 @@
 
 namespace sinewright::audio {
 
-class SampleRing;
-
 /// Where one stream's callback leaves its samples.
 ///
 /// A stream that was given up may still call: closing can hang while the callback's thread lives on. So the way to the
@@ -23,11 +21,10 @@ class CaptureTap final
 public:
     using Clock = std::chrono::steady_clock;
 
-    explicit CaptureTap(int channels) : m_channels(channels) {}
-
     /// [dev] Before the stream is started. `ring` must outlive shut().
     /// @param lastHeard  when the stream before this one gave its last samples; the outage is then marked as a gap.
-    void open(SampleRing& ring, core::SampleRate rate, std::optional<Clock::time_point> lastHeard);
+    void
+    open(SampleRing& ring, const StreamFormat& format, std::optional<Clock::time_point> lastHeard);
 
     /// [dev] Waits for a callback that is just copying, microseconds.
     void shut() noexcept;
@@ -58,11 +55,9 @@ private:
     static_assert(std::atomic<Gate>::is_always_lock_free);
     static_assert(std::atomic<Clock::rep>::is_always_lock_free);
 
-    // constant after construction
-    int m_channels;
     // written [dev] while the gate is shut, then [rt] only
     SampleRing* m_ring = nullptr;
-    double m_rateHz = 0.0;
+    StreamFormat m_format;
     bool m_isResuming = false;
     // atomic: written [rt] and [dev]
     std::atomic<Gate> m_gate{Gate::Shut};

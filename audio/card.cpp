@@ -49,6 +49,8 @@ public:
     ~CardSource() override { release(); }
     CardSource(const CardSource&) = delete;
     CardSource& operator=(const CardSource&) = delete;
+    CardSource(CardSource&&) = delete;
+    CardSource& operator=(CardSource&&) = delete;
 
     core::Result<StreamFormat> open() override
     {
@@ -147,7 +149,7 @@ private:
 
     std::future<core::Result<void>> beginStarting()
     {
-        m_stream->tap().open(*m_ring, m_format.rate, m_lastHeard);
+        m_stream->tap().open(*m_ring, m_format, m_lastHeard);
         return askDeviceThread([stream = m_stream] { return stream->start(); });
     }
 

@@ -17,7 +17,7 @@ struct DemoSettings
 {
     core::LampOscillatorParts parts;
     core::SampleRate rate{96000.0};
-    double trimmerOhm = 355.0;          ///< where the virtual trimmer stands at the start
+    double trimmerOhm = 355.0;          ///< for renderDemo(); the source goes by its knob
     double fullScaleVrms = 4.0;         ///< [V] rms of a full-scale sine at the interface's input
     double interfaceNoiseDbfs = -112.0; ///< rms, white over the whole rate's band
     double humAtOutputVrms = 0.0;       ///< [V] added behind the oscillator
@@ -43,7 +43,7 @@ inline constexpr double kDemoTrimmerHighestOhm = 480.0;
 ///
 /// @param trimmer  not null; its ohms > 0.
 /// @error open(): InvalidArgument for a rate outside 44.1 to 768 kHz.
-[[nodiscard]] std::unique_ptr<Source> makeDemoSource(DemoSettings settings,
+[[nodiscard]] std::unique_ptr<Source> makeDemoSource(const DemoSettings& settings,
                                                      std::shared_ptr<const DemoTrimmer> trimmer);
 
 /// `frames` samples of the demo, 1.0 = full scale, as fast as they can be made; for the command line and for tests.

@@ -39,6 +39,14 @@ void quietHandlers()
     setHandler<JackMessageHandler>("jack_set_info_function", ignoreJack);
 }
 
+PaError initialiseQuietly()
+{
+    static std::once_flag once;
+    std::call_once(once, quietHandlers);
+    const Hush hush;
+    return Pa_Initialize();
+}
+
 } // namespace
 
 Hush::Hush() : m_savedStderr(::fcntl(STDERR_FILENO, F_DUPFD_CLOEXEC, 0))
@@ -60,13 +68,7 @@ Hush::~Hush()
     }
 }
 
-PortAudioSession::PortAudioSession()
-{
-    static std::once_flag once;
-    std::call_once(once, quietHandlers);
-    const Hush hush;
-    m_outcome = Pa_Initialize();
-}
+PortAudioSession::PortAudioSession() : m_outcome(initialiseQuietly()) {}
 
 PortAudioSession::~PortAudioSession()
 {

@@ -20,6 +20,8 @@ public:
     ~PortAudioSession();
     PortAudioSession(const PortAudioSession&) = delete;
     PortAudioSession& operator=(const PortAudioSession&) = delete;
+    PortAudioSession(PortAudioSession&&) = delete;
+    PortAudioSession& operator=(PortAudioSession&&) = delete;
 
     /// paNoError when it works; with anything else no other call may be made.
     [[nodiscard]] PaError outcome() const { return m_outcome; }
@@ -40,6 +42,8 @@ public:
     ~Hush();
     Hush(const Hush&) = delete;
     Hush& operator=(const Hush&) = delete;
+    Hush(Hush&&) = delete;
+    Hush& operator=(Hush&&) = delete;
 
 private:
     int m_savedStderr;

@@ -42,6 +42,8 @@ public:
     virtual ~Source() = default;
     Source(const Source&) = delete;
     Source& operator=(const Source&) = delete;
+    Source(Source&&) = delete;
+    Source& operator=(Source&&) = delete;
 
     /// Opens the device or file and says what it delivers. May take seconds.
     [[nodiscard]] virtual core::Result<StreamFormat> open() = 0;

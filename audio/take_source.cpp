@@ -43,6 +43,8 @@ public:
     ~TakeSource() override { stopPlaying(); }
     TakeSource(const TakeSource&) = delete;
     TakeSource& operator=(const TakeSource&) = delete;
+    TakeSource(TakeSource&&) = delete;
+    TakeSource& operator=(TakeSource&&) = delete;
 
     core::Result<StreamFormat> open() override
     {

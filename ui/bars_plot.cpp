@@ -5,7 +5,6 @@
 #include <cmath>
 
 #include "ui/figure_text.h"
-#include "ui/tickers.h"
 
 namespace sinewright::ui {
 
@@ -21,10 +20,10 @@ constexpr int kDefaultHighestOrder = 10;
 
 } // namespace
 
-BarsPlot::BarsPlot(QWidget* parent) : Plot(u"harmonics"_s, tr("Harmonics, dBc"), parent)
+BarsPlot::BarsPlot(QWidget* parent) : Plot(u"harmonics"_s, tr("Harmonics"), u"dBc"_s, parent), m_orders(QSharedPointer<NumberTicker>::create(1.0))
 {
     yAxis->setTicker(QSharedPointer<NumberTicker>::create(kStepDb));
-    xAxis->setTicker(QSharedPointer<NumberTicker>::create(1.0));
+    xAxis->setTicker(m_orders);
     xAxis->grid()->setVisible(false);
     xAxis->setTickLength(0, 0);
     new Overprint(this, u"main"_s, [this](QCPPainter& painter) { paintBars(painter); });
@@ -44,7 +43,7 @@ void BarsPlot::show()
     const int highest = m_model.isEmpty() ? kDefaultHighestOrder : m_model.bars().back().order;
     xAxis->setRange(1.4, highest + 0.6);
     const double everyOrder = columns() / (highest + 0.2 - 1.0) >= 2.0 * typeSize() ? 1.0 : 5.0;
-    qSharedPointerCast<NumberTicker>(xAxis->ticker())->setStep(everyOrder);
+    m_orders->setStep(everyOrder);
     yAxis->setRange(m_model.range().low, m_model.range().high);
     setNote(m_model.isEmpty() ? tr("No tone, no harmonics.") : QString());
 }

@@ -3,6 +3,7 @@
 
 #include "ui/bars_model.h"
 #include "ui/plot.h"
+#include "ui/tickers.h"
 
 namespace sinewright::ui {
 
@@ -23,6 +24,7 @@ private:
     void paintBars(QCPPainter& painter) const;
 
     BarsModel m_model;
+    QSharedPointer<NumberTicker> m_orders;
 };
 
 } // namespace sinewright::ui

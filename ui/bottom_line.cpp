@@ -87,8 +87,8 @@ void BottomLine::compose()
     parts.removeAll(QString());
     const QString separator = u"   ·   "_s;
     m_state->setText(parts.join(separator) + separator);
-    const auto lost = static_cast<int>(std::min<quint64>(m_bench.framesLost, INT_MAX));
-    m_lost->setText(lost == 0 ? tr("no samples lost") : tr("%n sample(s) lost", nullptr, lost));
+    const quint64 lost = m_bench.framesLost;
+    m_lost->setText(lost == 0 ? tr("no samples lost") : tr("samples lost: %1").arg(lost));
     m_lost->setProperty("role", lost == 0 ? u"soft"_s : u"alert"_s);
     m_lost->setStyleSheet(QString()); // has the style sheet look at the property again
 }

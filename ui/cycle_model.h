@@ -22,7 +22,7 @@ public:
     [[nodiscard]] bool isEmpty() const { return m_residual.empty(); }
     [[nodiscard]] const std::vector<QPointF>& residual() const { return m_residual; } ///< x [degree], y [%]
     [[nodiscard]] const std::vector<QPointF>& cycle() const { return m_cycle; } ///< x [degree], y 1 = fundamental
-    [[nodiscard]] double residualEnd() const { return m_residualEnd; }          ///< the axis is -end .. end [%]
+    [[nodiscard]] double residualEnd() const { return m_residualEnd > 0.0 ? m_residualEnd : 1.0; } ///< the axis is -end .. end [%]
 
 signals:
     void changed();
@@ -31,7 +31,7 @@ private:
     std::shared_ptr<const core::CycleView> m_view;
     std::vector<QPointF> m_residual;
     std::vector<QPointF> m_cycle;
-    double m_residualEnd = 1.0;
+    double m_residualEnd = 0.0;
 };
 
 } // namespace sinewright::ui

@@ -17,8 +17,9 @@ constexpr double kCycleEnd = 1.15; ///< the averaged cycle keeps a little clear 
 } // namespace
 
 CyclePlot::CyclePlot(QWidget* parent)
-    : Plot(u"residual"_s, tr("Cycle residual, %"), parent), m_cycle(nullptr), m_residual(nullptr)
+    : Plot(u"residual"_s, tr("Cycle residual"), u"%"_s, parent), m_cycle(nullptr), m_residual(nullptr)
 {
+    setSideMargins(40, 16);
     xAxis->setRange(0.0, kTurnDeg);
     auto degrees = QSharedPointer<QCPAxisTickerText>::create();
     for (double at = 0.0; at <= kTurnDeg; at += kQuarterDeg) {

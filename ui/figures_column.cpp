@@ -21,6 +21,14 @@ constexpr int kUnderPixels = 12;
 constexpr int kThdPixels = 46;
 constexpr int kFigurePixels = 27;
 constexpr double kLineHeight = 19.0;
+constexpr double kLabelBaseline = 13.0; ///< that of the plots' titles beside it
+constexpr double kLabelGap = 8.0;
+constexpr double kThdBlockHeight = 76.0; ///< of a block without the gaps around it
+constexpr double kBlockHeight = 62.0;
+constexpr double kPlainBlockHeight = 44.0;
+constexpr double kLargestGap = 16.0;
+constexpr double kPlainHeight = 600.0; ///< of the column; a higher one has larger type
+constexpr double kLargestScale = 1.4;
 constexpr qint64 kShowEveryMs = 240;
 
 } // namespace
@@ -67,18 +75,22 @@ void FiguresColumn::rebuild()
 
     FigureText level = reading.levelVrms ? voltFigure(reading.levelVrms) : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s);
     const QString levelUnder = reading.levelVrms ? joined(decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)) : QString();
-    const auto best = m_frame && m_frame->trend ? m_frame->trend->best : std::nullopt;
-    const QString bestUnder =
-        best ? tr("%1, at %2")
-                   .arg(ageText(m_frame->timeS - best->timeS),
-                        joined(best->levelVrms ? voltFigure(best->levelVrms) : decibelFigure(best->levelDbfs, 2, u"dBFS"_s)))
-             : QString();
+    const core::BestReading* best = m_frame && m_frame->trend && m_frame->trend->best ? &*m_frame->trend->best : nullptr;
+    QString bestUnder;
+    std::optional<double> bestThd;
+    if (best != nullptr) {
+        bestThd = best->thdRatio;
+        bestUnder = tr("%1, at %2")
+                        .arg(ageText(m_frame->timeS - best->timeS),
+                             joined(best->levelVrms ? voltFigure(best->levelVrms)
+                                                    : decibelFigure(best->levelDbfs, 2, u"dBFS"_s)));
+    }
     m_blocks = {
         {tr("THD"), kind, percentFigure(reading.thdRatio, digits), joined(ratioDecibelFigure(reading.thdRatio, 1, u"dB"_s)), false},
         {tr("THD+N"), {}, percentFigure(reading.thdnRatio, digits), joined(ratioDecibelFigure(reading.thdnRatio, 1, u"dB"_s)), false},
         {tr("Frequency"), {}, frequencyFigure(reading.frequencyHz, reading.frequencyStdHz), {}, false},
         {tr("Level"), {}, level, levelUnder, false},
-        {tr("Best so far"), {}, percentFigure(best ? std::optional(best->thdRatio) : std::nullopt), bestUnder, true},
+        {tr("Best so far"), {}, percentFigure(bestThd), bestUnder, true},
     };
     m_lines = {
         {tr("SINAD"), decibelFigure(reading.sinadDb, 1, u"dB"_s)},
@@ -96,71 +108,82 @@ void FiguresColumn::rebuild()
                                       joined(m_blocks[2].figure), joined(m_blocks[3].figure)));
 }
 
+int FiguresColumn::px(double pixels) const
+{
+    return static_cast<int>(std::lround(pixels * std::clamp(height() / kPlainHeight, 1.0, kLargestScale)));
+}
+
+void FiguresColumn::resizeEvent(QResizeEvent* event)
+{
+    QWidget::resizeEvent(event);
+    setFixedWidth(px(kWidth));
+}
+
 void FiguresColumn::paintEvent(QPaintEvent* /*event*/)
 {
     QPainter painter(this);
-    double used = 0.0;
-    for (const Block& block : m_blocks) {
-        used += block.label == m_blocks.front().label ? 88.0 : block.under.isEmpty() ? 50.0 : 66.0;
+    double used = px(kLineHeight) * (static_cast<double>(m_lines.size()) + 1.5);
+    for (std::size_t i = 0; i < m_blocks.size(); ++i) {
+        used += px(i == 0 ? kThdBlockHeight : m_blocks[i].under.isEmpty() ? kPlainBlockHeight : kBlockHeight);
     }
-    used += kLineHeight * (static_cast<double>(m_lines.size()) + 2.0);
-    const double gap = std::clamp((height() - used) / 7.0, 4.0, 16.0);
+    const double gaps = 2.0 * static_cast<double>(m_blocks.size()) + 1.0;
+    const double gap = std::clamp((height() - used) / gaps, 3.0, static_cast<double>(px(kLargestGap)));
     double y = 0.0;
     for (const Block& block : m_blocks) {
-        y = paintBlock(painter, block, y, &block == m_blocks.data() ? kThdPixels : kFigurePixels) + gap;
+        y = paintBlock(painter, block, y, px(&block == m_blocks.data() ? kThdPixels : kFigurePixels)) + gap;
         paintRule(painter, y);
         y += gap;
     }
     for (const Line& line : m_lines) {
-        paintLine(painter, line, y + kUnderPixels);
-        y += kLineHeight;
+        paintLine(painter, line, y + px(kUnderPixels));
+        y += px(kLineHeight);
     }
     if (!m_remarks.isEmpty()) {
-        y += gap / 2.0;
-        QFont font = sentenceFont(13);
+        QFont font = sentenceFont(px(kUnderPixels + 1));
         font.setItalic(true);
         painter.setFont(font);
         painter.setPen(m_theme->ink);
-        painter.drawText(QRectF(0.0, y, width(), height() - y), Qt::AlignLeft | Qt::TextWordWrap, m_remarks);
+        painter.drawText(QRectF(0.0, y + gap / 2.0, width(), height() - y), Qt::AlignLeft | Qt::TextWordWrap, m_remarks);
     }
 }
 
 double FiguresColumn::paintBlock(QPainter& painter, const Block& block, double y, int figurePixels) const
 {
-    painter.setFont(labelFont(kLabelPixels));
+    const double labelBaseline = y + px(kLabelBaseline);
+    painter.setFont(labelFont(px(kLabelPixels)));
     painter.setPen(m_theme->inkSoft);
-    painter.drawText(QPointF(0.0, y + kLabelPixels), block.label);
+    painter.drawText(QPointF(0.0, labelBaseline), block.label);
     if (!block.remark.isEmpty()) {
-        painter.setFont(figureFont(kUnderPixels));
-        painter.drawText(QRectF(0.0, y - 2.0, width(), kUnderPixels + 6.0), Qt::AlignRight | Qt::AlignTop, block.remark);
+        painter.setFont(figureFont(px(kUnderPixels)));
+        const double x = width() - QFontMetricsF(painter.font()).horizontalAdvance(block.remark);
+        painter.drawText(QPointF(x, labelBaseline), block.remark);
     }
     painter.setFont(displayFont(figurePixels));
     painter.setPen(block.isBest ? m_theme->verdigris : &block == m_blocks.data() ? m_theme->copper : m_theme->ink);
-    const double capHeight = QFontMetricsF(painter.font()).capHeight();
-    const double baseline = y + kLabelPixels + 9.0 + capHeight;
+    const QFontMetricsF metrics(painter.font());
+    const double baseline = std::round(labelBaseline + px(kLabelGap) + metrics.capHeight());
     painter.drawText(QPointF(-1.0, baseline), block.figure.value);
-    const double x = QFontMetricsF(painter.font()).horizontalAdvance(block.figure.value);
-    painter.setFont(figureFont(std::max(13, figurePixels / 2)));
+    painter.setFont(figureFont(std::max(px(kUnderPixels + 1), figurePixels / 2)));
     painter.setPen(m_theme->inkSoft);
-    painter.drawText(QPointF(x + 5.0, baseline), block.figure.unit);
+    painter.drawText(QPointF(metrics.horizontalAdvance(block.figure.value) + px(5.0), baseline), block.figure.unit);
     if (block.under.isEmpty()) {
         return baseline + 2.0;
     }
-    painter.setFont(figureFont(kUnderPixels));
-    painter.drawText(QPointF(0.0, baseline + kUnderPixels + 6.0), block.under);
-    return baseline + kUnderPixels + 8.0;
+    painter.setFont(figureFont(px(kUnderPixels)));
+    painter.drawText(QPointF(0.0, baseline + px(kUnderPixels + 6)), block.under);
+    return baseline + px(kUnderPixels + 8);
 }
 
 void FiguresColumn::paintLine(QPainter& painter, const Line& line, double baseline) const
 {
-    painter.setFont(figureFont(kUnderPixels + 1));
+    painter.setFont(figureFont(px(kUnderPixels + 1)));
     painter.setPen(m_theme->inkSoft);
     painter.drawText(QPointF(0.0, baseline), line.label);
     const QFontMetricsF metrics(painter.font());
     const double unitWidth = metrics.horizontalAdvance(u"dBFS"_s);
     painter.drawText(QPointF(width() - unitWidth, baseline), line.figure.unit);
     painter.setPen(m_theme->ink);
-    painter.drawText(QPointF(width() - unitWidth - 5.0 - metrics.horizontalAdvance(line.figure.value), baseline),
+    painter.drawText(QPointF(width() - unitWidth - px(5.0) - metrics.horizontalAdvance(line.figure.value), baseline),
                      line.figure.value);
 }
 

@@ -42,12 +42,15 @@ public:
 
 protected:
     void paintEvent(QPaintEvent* event) override;
+    void resizeEvent(QResizeEvent* event) override;
 
 private:
     void rebuild();
     [[nodiscard]] double paintBlock(QPainter& painter, const Block& block, double y, int figurePixels) const;
     void paintLine(QPainter& painter, const Line& line, double baseline) const;
     void paintRule(QPainter& painter, double y) const;
+
+    [[nodiscard]] int px(double pixels) const; ///< grows with the window's height
 
     const Theme* m_theme;
     std::shared_ptr<const core::Frame> m_frame;

@@ -1,7 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/hookup_page.h"
 
-#include <QComboBox>
 #include <QDoubleSpinBox>
 #include <QGridLayout>
 #include <QLabel>
@@ -9,7 +8,7 @@
 #include <QSpinBox>
 
 #include "core/units.h"
-#include "ui/figure_text.h"
+#include "ui/choice_box.h"
 #include "ui/prose.h"
 #include "ui/reading_choice.h"
 
@@ -34,7 +33,7 @@ HookUpPage::HookUpPage(QWidget* parent)
     , m_bandLow(new QDoubleSpinBox(this))
     , m_bandHigh(new QDoubleSpinBox(this))
     , m_harmonics(new QSpinBox(this))
-    , m_weighting(new QComboBox(this))
+    , m_weighting(new ChoiceBox(this))
 {
     setAccessibleName(tr("Hook-up"));
     QVBoxLayout* column = scrollingSheet(this);
@@ -77,8 +76,8 @@ void HookUpPage::addCautions(QVBoxLayout& column)
 void HookUpPage::addLevel(QVBoxLayout& column)
 {
     column.addWidget(headingLabel(tr("Source and level"), this));
-    column.addWidget(paragraphLabel(tr("Choose the source above. Set the interface's gain so that the peaks stay between "
-                                       "−12 and −3 dBFS: a little room for the level to bounce when you turn the trimmer, "
+    column.addWidget(paragraphLabel(tr("Choose the source above. Set the interface's gain so that the peaks stay 3 to 12 dB "
+                                       "below full scale: a little room for the level to bounce when you turn the trimmer, "
                                        "and still well clear of the interface's own noise."),
                                     this));
     QFont font = m_level->font();

@@ -58,7 +58,7 @@ LevelMeter::LevelMeter(QWidget* parent) : QWidget(parent), m_theme(&ui::theme(Th
 {
     setObjectName(u"levelMeter"_s);
     setAccessibleName(tr("Input level"));
-    setToolTip(tr("Input level in dBFS: the bar is the rms, the tick the peak. Aim for peaks between -12 and -3 dBFS."));
+    setToolTip(tr("Input level in dBFS: the bar is the rms, the tick the peak. Aim for peaks 3 to 12 dB below full scale."));
     setSizePolicy(QSizePolicy::Expanding, QSizePolicy::Fixed);
     clear();
 }

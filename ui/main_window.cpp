@@ -42,6 +42,9 @@ constexpr int kMargin = 22;
 constexpr int kSlowestPollMs = 33;
 constexpr int kFastestPollMs = 16;
 constexpr qint64 kTableEveryMs = 250;
+constexpr int kTrimAdvice = 27; ///< type sizes of the advice line
+constexpr int kOtherAdvice = 18;
+constexpr int kLeastAdvice = 15;
 constexpr std::array kPageWords{"hook-up", "trim", "warm-up", "network", "record"};
 
 } // namespace
@@ -57,6 +60,7 @@ public:
     void poll();
     void showNow();
     void startPolling();
+    void focusPage();
 
     MainWindow& m_window;
     FrameFeed m_feed;
@@ -218,11 +222,16 @@ void MainWindow::Impl::setPage(int index)
 {
     m_pages->setCurrentIndex(index);
     m_actions.pages[static_cast<std::size_t>(index)]->setChecked(true);
-    if (index == static_cast<int>(Page::Trim)) {
-        m_trim->trimmer().setFocus();
-    }
+    m_adviceLabel->setTypeSizes(index == static_cast<int>(Page::Trim) ? kTrimAdvice : kOtherAdvice, kLeastAdvice, 1);
+    focusPage();
     showNow();
     announceView();
+}
+
+void MainWindow::Impl::focusPage()
+{
+    QWidget& trimmer = m_trim->trimmer();
+    (page() == m_trim && trimmer.isVisibleTo(m_trim) ? &trimmer : page())->setFocus();
 }
 
 void MainWindow::Impl::setDusk(bool isDusk)
@@ -254,12 +263,12 @@ void MainWindow::Impl::setArmsLength(bool isOn)
     if (isOn) {
         m_wasMaximised = m_window.isMaximized();
         m_window.showFullScreen();
-        m_arms->setFocus();
     } else if (m_wasMaximised) {
         m_window.showMaximized();
     } else {
         m_window.showNormal();
     }
+    focusPage();
     showNow();
 }
 
@@ -397,6 +406,7 @@ void MainWindow::Impl::announceView()
 void MainWindow::Impl::applyView(const ViewSettings& settings)
 {
     m_isQuiet = true;
+    setDusk(settings.theme == ThemeName::Dusk);
     m_actions.dusk->setChecked(settings.theme == ThemeName::Dusk);
     m_actions.pictureScale->setChecked(settings.pictureScale == 2);
     setPage(static_cast<int>(settings.page));
@@ -408,7 +418,6 @@ void MainWindow::Impl::applyView(const ViewSettings& settings)
 
 MainWindow::MainWindow(FrameFeed feed, QWidget* parent) : QMainWindow(parent)
 {
-    applyTheme(ThemeName::Paper);
     m_impl = std::make_unique<Impl>(*this, std::move(feed));
     setWindowTitle(u"Sinewright"_s);
     setMinimumSize(960, 600);
@@ -468,6 +477,7 @@ void MainWindow::showEvent(QShowEvent* event)
 {
     QMainWindow::showEvent(event);
     m_impl->startPolling();
+    m_impl->focusPage();
 }
 
 } // namespace sinewright::ui

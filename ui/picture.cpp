@@ -116,8 +116,10 @@ PictureCaption captionFor(const QString& title, const core::Frame* frame, const 
 QImage composePicture(QWidget* subject, const PictureCaption& caption, int scale)
 {
     const QPalette palette = subject->palette();
-    const int width = std::max(1, subject->width());
-    const int textWidth = width;
+    // A window reaches the picture's edges; a page or a plot gets a margin of paper.
+    const int edge = subject->isWindow() ? 0 : kMargin;
+    const int width = subject->width() + 2 * edge;
+    const int textWidth = width - 2 * kMargin;
     const QFont titleFont = sentenceFont(kTitlePixels);
     const QFont textFont = figureFont(kTextPixels);
     const int titleHeight = static_cast<int>(kTitlePixels * kLeading);
@@ -128,24 +130,24 @@ QImage composePicture(QWidget* subject, const PictureCaption& caption, int scale
     QList<QRect> places;
     for (const QString& line : std::as_const(lines)) {
         const int height = metrics.boundingRect(QRect(0, 0, textWidth, 10000), Qt::TextWordWrap, line).height() + 4;
-        places << QRect(kMargin, subject->height() + kMargin + stripHeight, textWidth, height);
+        places << QRect(kMargin, subject->height() + edge + stripHeight, textWidth, height);
         stripHeight += height;
     }
-    QImage image((width + 2 * kMargin) * scale, (subject->height() + 2 * kMargin + stripHeight) * scale,
+    QImage image(width * scale, (subject->height() + edge + stripHeight + kMargin) * scale,
                  QImage::Format_RGB32);
     image.setDevicePixelRatio(scale);
     image.fill(palette.color(QPalette::Window));
     QPainter painter(&image);
     {
         const FinePlots fine(*subject, scale);
-        subject->render(&painter, QPoint(kMargin, kMargin), QRegion(), QWidget::DrawChildren);
+        subject->render(&painter, QPoint(edge, edge), QRegion(), QWidget::DrawChildren);
     }
-    const int top = subject->height() + kMargin;
+    const int top = subject->height() + edge;
     painter.setPen(palette.color(QPalette::PlaceholderText));
-    painter.drawLine(QPointF(kMargin, top + kMargin / 2.0), QPointF(kMargin + width, top + kMargin / 2.0));
+    painter.drawLine(QPointF(kMargin, top + kMargin / 2.0), QPointF(width - kMargin, top + kMargin / 2.0));
     painter.setPen(palette.color(QPalette::WindowText));
     painter.setFont(titleFont);
-    const QRect titlePlace(kMargin, top + kMargin - 2, width, titleHeight);
+    const QRect titlePlace(kMargin, top + kMargin - 2, textWidth, titleHeight);
     painter.drawText(titlePlace, Qt::AlignLeft | Qt::AlignVCenter, caption.title);
     painter.setFont(textFont);
     painter.setPen(palette.color(QPalette::PlaceholderText));

@@ -30,7 +30,8 @@ struct PictureCaption {
 /// The widget as it stands, with the caption strip set under it.
 ///
 /// @param scale  1 or 2: pixels of the picture over logical pixels of the widget.
-/// @return       width() * scale pixels wide; device pixel ratio 1.
+/// @return       The widget at that scale and the strip, with a margin of paper around all but a window; device
+///               pixel ratio 1.
 [[nodiscard]] QImage composePicture(QWidget* subject, const PictureCaption& caption, int scale);
 
 } // namespace sinewright::ui

@@ -37,10 +37,11 @@ void Overprint::draw(QCPPainter* painter)
     m_paint(*painter);
 }
 
-Plot::Plot(QString plainName, QString title, QWidget* parent)
+Plot::Plot(QString plainName, QString title, QString unit, QWidget* parent)
     : QCustomPlot(parent)
     , m_plainName(std::move(plainName))
     , m_title(std::move(title))
+    , m_unit(std::move(unit))
     , m_theme(&ui::theme(ThemeName::Paper))
     , m_typeSize(kTypeSize)
     , m_leftMargin(kLeftMargin)
@@ -92,11 +93,6 @@ void Plot::setTypeSize(int pixels)
     m_typeSize = pixels;
     applyMargins();
     setTheme(*m_theme);
-}
-
-void Plot::setTitle(const QString& title)
-{
-    m_title = title;
 }
 
 void Plot::setSideMargins(int left, int right)
@@ -152,7 +148,9 @@ void Plot::paintTitle(QCPPainter& painter) const
     painter.setFont(labelFont(m_typeSize - 1));
     painter.setPen(m_theme->inkSoft);
     painter.drawText(QPointF(0.0, baseline), m_title);
+    const double unitX = QFontMetricsF(painter.font()).horizontalAdvance(m_title) + kKeyGap;
     painter.setFont(figureFont(m_typeSize));
+    painter.drawText(QPointF(unitX, baseline), m_unit);
     const QFontMetricsF metrics(painter.font());
     double x = width() - m_rightMargin;
     for (auto key = m_keys.rbegin(); key != m_keys.rend(); ++key) {

@@ -35,8 +35,8 @@ public:
         QPen pen;
     };
 
-    /// @param plainName  one word for file names.
-    Plot(QString plainName, QString title, QWidget* parent);
+    /// @param plainName  one word for file names.   @param unit  of the y axis; may be empty.
+    Plot(QString plainName, QString title, QString unit, QWidget* parent);
 
     [[nodiscard]] QString plainName() const { return m_plainName; }
     void setTheme(const Theme& theme);
@@ -53,7 +53,8 @@ public:
     void setTypeSize(int pixels);
 
 protected:
-    void setTitle(const QString& title);
+    /// The unit stands behind the title as it is written; titles are set in capitals.
+    void setUnitText(const QString& unit) { m_unit = unit; }
     void setKeys(std::vector<Key> keys) { m_keys = std::move(keys); }
     void setNote(const QString& note) { m_note = note; }
     void setSideMargins(int left, int right);
@@ -74,6 +75,7 @@ private:
 
     QString m_plainName;
     QString m_title;
+    QString m_unit;
     QString m_note;
     std::vector<Key> m_keys;
     const Theme* m_theme;

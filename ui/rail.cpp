@@ -108,13 +108,16 @@ void RailButton::paintPage(QPainter& painter) const
 void RailButton::paintCommand(QPainter& painter) const
 {
     const int baseline = height() / 2 + kCommandType / 3;
+    if (isChecked()) {
+        painter.fillRect(QRect(0, 0, kMarkWidth, height()), m_theme->copper);
+    }
     painter.setFont(textFont(kCommandType));
     painter.setPen(isChecked() ? m_theme->copper : underMouse() ? m_theme->ink : m_theme->inkSoft);
     painter.drawText(QPoint(kMargin, baseline), text());
     painter.setFont(figureFont(kCommandType - 1));
     painter.setPen(m_theme->inkSoft);
-    painter.drawText(QRect(0, 0, width() - kMargin + 4, height()), Qt::AlignRight | Qt::AlignVCenter,
-                     m_action->shortcut().toString(QKeySequence::NativeText));
+    const QString key = m_action->shortcut().toString(QKeySequence::NativeText);
+    painter.drawText(QPointF(width() - kMargin + 4 - QFontMetricsF(painter.font()).horizontalAdvance(key), baseline), key);
 }
 
 Rail::Rail(const QList<QAction*>& pages, const QList<QAction*>& commands, QWidget* parent) : QWidget(parent)

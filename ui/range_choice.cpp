@@ -75,7 +75,7 @@ AxisRange linearRange(double lowest, double highest, double leastSpan, AxisRange
 double symmetricEnd(double peak, double current)
 {
     const double wanted = stepAbove(peak * kRoom);
-    return peak <= current && current < kLoose * 2.0 * wanted ? current : wanted;
+    return peak <= current && current <= kLoose * wanted ? current : wanted;
 }
 
 std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points, double columnWidth)

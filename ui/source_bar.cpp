@@ -26,17 +26,11 @@ bool isSame(const SourceChoice& a, const SourceChoice& b)
 
 } // namespace
 
-void ChoiceBox::showPopup()
-{
-    emit aboutToOpen();
-    QComboBox::showPopup();
-}
-
 SourceBar::SourceBar(QWidget* parent)
     : QWidget(parent)
     , m_picker(new ChoiceBox(this))
-    , m_rate(new QComboBox(this))
-    , m_channel(new QComboBox(this))
+    , m_rate(new ChoiceBox(this))
+    , m_channel(new ChoiceBox(this))
     , m_meter(new LevelMeter(this))
 {
     m_picker->setObjectName(u"sourcePicker"_s);

@@ -1,25 +1,14 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <QComboBox>
 #include <QList>
 #include <QWidget>
 
 #include "ui/bench_state.h"
+#include "ui/choice_box.h"
 #include "ui/level_meter.h"
 
 namespace sinewright::ui {
-
-/// A choice box that says when it is about to open.
-class ChoiceBox final : public QComboBox {
-    Q_OBJECT
-public:
-    using QComboBox::QComboBox;
-    void showPopup() override;
-
-signals:
-    void aboutToOpen();
-};
 
 /// Source, rate, channel and the level meter, over the pages.
 class SourceBar final : public QWidget {
@@ -50,8 +39,8 @@ private:
     QWidget* labelled(const QString& label, QWidget* field);
 
     ChoiceBox* m_picker;
-    QComboBox* m_rate;
-    QComboBox* m_channel;
+    ChoiceBox* m_rate;
+    ChoiceBox* m_channel;
     LevelMeter* m_meter;
     QList<SourceChoice> m_choices;
     BenchState m_state;

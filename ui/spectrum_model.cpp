@@ -15,8 +15,8 @@ constexpr double kLowestShownHz = 20.0;
 constexpr double kLowestShownForLowToneHz = 5.0;
 constexpr double kLowToneHz = 40.0;
 constexpr double kTopDb = 5.0;          ///< a little room over 0 for the fundamental's number
-constexpr double kFloorStepDb = 20.0;
-constexpr double kRoomUnderNoiseDb = 12.0;
+constexpr double kFloorStepDb = 10.0;
+constexpr double kRoomUnderNoiseDb = 20.0; ///< under the peaks of the noise
 constexpr double kHighestFloorDb = -100.0;
 constexpr double kLowestFloorDb = -200.0;
 
@@ -114,8 +114,8 @@ void SpectrumModel::rebuildStems()
 void SpectrumModel::chooseLevelRange()
 {
     std::vector<double> levels;
-    levels.reserve(m_lowest.size());
-    for (const QPointF& point : m_lowest) {
+    levels.reserve(m_highest.size());
+    for (const QPointF& point : m_highest) {
         levels.push_back(point.y());
     }
     if (levels.empty()) {
@@ -125,8 +125,8 @@ void SpectrumModel::chooseLevelRange()
     std::nth_element(levels.begin(), middle, levels.end());
     const double noise = *middle - kRoomUnderNoiseDb;
     const double wanted = std::clamp(std::floor(noise / kFloorStepDb) * kFloorStepDb, kLowestFloorDb, kHighestFloorDb);
-    const bool keeps = m_levelRange.span() > 0.0 && noise >= m_levelRange.low - kRoomUnderNoiseDb / 2.0 &&
-                       wanted <= m_levelRange.low + kFloorStepDb;
+    const bool keeps = m_levelRange.span() > 0.0 && noise >= m_levelRange.low - kRoomUnderNoiseDb / 4.0 &&
+                       wanted <= m_levelRange.low + 2.0 * kFloorStepDb;
     m_levelRange = {keeps ? m_levelRange.low : wanted, kTopDb};
 }
 

@@ -6,7 +6,6 @@
 #include <limits>
 
 #include "ui/figure_text.h"
-#include "ui/tickers.h"
 
 namespace sinewright::ui {
 
@@ -15,7 +14,8 @@ using namespace Qt::StringLiterals;
 namespace {
 
 constexpr double kStepDb = 20.0;
-constexpr double kRoomiestDecades = 4.2;
+constexpr double kRoomiestDecades = 4.0;
+constexpr double kPixelsPerDecade = 84.0; ///< room that the numbers 1, 2, 5 want
 constexpr double kStemWidth = 2.0;
 constexpr double kKilo = 1000.0;
 
@@ -27,10 +27,12 @@ QString frequencyLabel(double hz)
 } // namespace
 
 SpectrumPlot::SpectrumPlot(QWidget* parent)
-    : Plot(u"spectrum"_s, tr("Spectrum"), parent), m_lowest(nullptr), m_highest(nullptr)
+    : Plot(u"spectrum"_s, tr("Spectrum"), u"dBFS"_s, parent)
+    , m_frequencies(QSharedPointer<StepTicker>::create(frequencyLabel, kRoomiestDecades))
+    , m_lowest(nullptr), m_highest(nullptr)
 {
     xAxis->setScaleType(QCPAxis::stLogarithmic);
-    xAxis->setTicker(QSharedPointer<StepTicker>::create(frequencyLabel, kRoomiestDecades));
+    xAxis->setTicker(m_frequencies);
     yAxis->setTicker(QSharedPointer<NumberTicker>::create(kStepDb));
     m_lowest = addGraph();
     m_highest = addGraph();
@@ -65,7 +67,8 @@ void SpectrumPlot::show()
     fill(*m_highest, m_model.highest());
     xAxis->setRange(m_model.frequencyRange().low, m_model.frequencyRange().high);
     yAxis->setRange(m_model.levelRange().low, m_model.levelRange().high);
-    setTitle(m_model.shownUnit() == LevelUnit::Dbc ? tr("Spectrum, dBc") : tr("Spectrum, dBFS"));
+    m_frequencies->setRoomiestDecades(columns() / kPixelsPerDecade);
+    setUnitText(m_model.shownUnit() == LevelUnit::Dbc ? u"dBc"_s : u"dBFS"_s);
     setNote(m_model.isEmpty() ? tr("The spectrum appears with the first samples.") : QString());
     if (m_model.stems().size() > 1) {
         const auto strongest =

@@ -3,6 +3,7 @@
 
 #include "ui/plot.h"
 #include "ui/spectrum_model.h"
+#include "ui/tickers.h"
 
 namespace sinewright::ui {
 
@@ -25,6 +26,7 @@ private:
     void paintStems(QCPPainter& painter) const;
 
     SpectrumModel m_model;
+    QSharedPointer<StepTicker> m_frequencies;
     QCPGraph* m_lowest;
     QCPGraph* m_highest;
 };

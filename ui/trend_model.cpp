@@ -58,6 +58,16 @@ void TrendModel::setFrame(std::shared_ptr<const core::Frame> frame)
     rebuild();
 }
 
+AxisRange TrendModel::percentRange() const
+{
+    return m_percentRange.span() > 0.0 ? m_percentRange : AxisRange{0.01, 1.0};
+}
+
+AxisRange TrendModel::levelRange() const
+{
+    return m_levelRange.span() > 0.0 ? m_levelRange : AxisRange{-20.0, 0.0};
+}
+
 void TrendModel::rebuild()
 {
     m_thd.clear();

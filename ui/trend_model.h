@@ -35,8 +35,9 @@ public:
     /// y [dBFS]
     [[nodiscard]] const std::vector<QPointF>& level() const { return m_level; }
     [[nodiscard]] const std::optional<Best>& best() const { return m_best; }
-    [[nodiscard]] AxisRange percentRange() const { return m_percentRange; }
-    [[nodiscard]] AxisRange levelRange() const { return m_levelRange; }
+    /// The last ranges chosen stay when the trend is empty; at the start 0.01 .. 1 % and -20 .. 0 dBFS.
+    [[nodiscard]] AxisRange percentRange() const;
+    [[nodiscard]] AxisRange levelRange() const;
 
 signals:
     void changed();
@@ -51,8 +52,8 @@ private:
     std::vector<QPointF> m_thdn;
     std::vector<QPointF> m_level;
     std::optional<Best> m_best;
-    AxisRange m_percentRange{0.01, 10.0};
-    AxisRange m_levelRange{-20.0, 0.0};
+    AxisRange m_percentRange;
+    AxisRange m_levelRange;
 };
 
 } // namespace sinewright::ui

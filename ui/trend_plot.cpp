@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "ui/advice.h"
 #include "ui/figure_text.h"
 #include "ui/tickers.h"
 
@@ -35,7 +36,7 @@ QString timeLabel(double seconds)
 } // namespace
 
 TrendPlot::TrendPlot(QWidget* parent)
-    : Plot(u"trend"_s, tr("Trim trend"), parent)
+    : Plot(u"trend"_s, tr("Trim trend"), QString(), parent)
     , m_thd(nullptr)
     , m_thdn(nullptr)
     , m_level(nullptr)
@@ -44,7 +45,7 @@ TrendPlot::TrendPlot(QWidget* parent)
     yAxis2->setVisible(true);
     yAxis->setScaleType(QCPAxis::stLogarithmic);
     yAxis->setTicker(QSharedPointer<StepTicker>::create(percentLabel, kRoomiestDecades));
-    yAxis2->setTicker(QSharedPointer<NumberTicker>::create(0.0, 4));
+    yAxis2->setTicker(QSharedPointer<NumberTicker>::create(0.0, 6));
     yAxis2->grid()->setVisible(false);
     auto time = QSharedPointer<QCPAxisTickerText>::create();
     for (double at = -core::Trend::kSpanS; at <= 0.0; at += kMinuteS) {
@@ -85,9 +86,8 @@ void TrendPlot::show()
     yAxis2->setRange(m_model.levelRange().low, m_model.levelRange().high);
     setNote(m_model.isEmpty() ? tr("The trend of the last three minutes grows here as readings come in.") : QString());
     if (m_model.best()) {
-        describe(tr("Trim trend of the last three minutes. Best so far %1, set %n second(s) ago.", nullptr,
-                    static_cast<int>(m_model.best()->agoS))
-                     .arg(joined(percentFigure(m_model.best()->percent / 100.0))));
+        describe(tr("Trim trend of the last three minutes. Best so far %1 %, %2.")
+                     .arg(percentLabel(m_model.best()->percent), ageText(m_model.best()->agoS)));
     }
 }
 

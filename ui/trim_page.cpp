@@ -27,8 +27,8 @@ TrimPage::TrimPage(QWidget* parent)
     setAccessibleName(tr("Trim"));
     auto* lower = new QHBoxLayout;
     lower->setSpacing(20);
-    lower->addWidget(m_spectrum, 9);
-    lower->addWidget(m_bars, 6);
+    lower->addWidget(m_spectrum, 8);
+    lower->addWidget(m_bars, 7);
     lower->addWidget(m_cycle, 6);
 
     auto* left = new QVBoxLayout;
@@ -62,7 +62,11 @@ void TrimPage::showBench(const BenchState& state)
         m_trimmer->setTravel(state.trimmerLowestOhm, state.trimmerHighestOhm);
         m_trimmer->setOhm(*state.trimmerOhm);
     }
+    const bool hadFocus = m_trimmer->hasFocus();
     m_trimmer->setVisible(isDemo);
+    if (hadFocus && !isDemo) {
+        setFocus();
+    }
 }
 
 void TrimPage::setTheme(const Theme& theme)

@@ -281,7 +281,7 @@ private slots:
         BenchSession session(scriptedFactory(std::make_shared<Script>()),
                              [&listedOn]() -> core::Result<std::vector<audio::CardInfo>> {
                                  listedOn = QThread::currentThread();
-                                 return std::vector<audio::CardInfo>{{.hostApi = "ALSA", .name = "usb"}};
+                                 return std::vector<audio::CardInfo>{{.hostApi = "ALSA", .name = "usb", .ratesHz = {}}};
                              });
         QSignalSpy spy(&session, &BenchSession::cardsListed);
         session.wantCards();

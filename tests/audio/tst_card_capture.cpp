@@ -24,9 +24,9 @@ using tests::VirtualCard;
 namespace {
 
 constexpr int kRateHz = 96000;
-constexpr std::size_t kFrames = 3 * kRateHz;
+constexpr std::size_t kFrames = 6 * kRateHz;
 
-/// A tone whose every sample differs from zero, so that where it begins is seen.
+/// None of its samples is zero, so that where it begins is seen.
 std::vector<float> tone(double hz, double amplitude)
 {
     std::vector<float> samples(kFrames);
@@ -62,6 +62,8 @@ public:
     }
     StderrCatcher(const StderrCatcher&) = delete;
     StderrCatcher& operator=(const StderrCatcher&) = delete;
+    StderrCatcher(StderrCatcher&&) = delete;
+    StderrCatcher& operator=(StderrCatcher&&) = delete;
 
     QByteArray caught()
     {
@@ -192,7 +194,7 @@ void TestCardCapture::choiceThatCannotBeMet_isRefusedInOneLine()
 
 void TestCardCapture::playedTone_comesBackSampleForSample()
 {
-    const auto left = tone(997.0, 0.9);
+    const auto left = tone(997.1, 0.9);
     const auto right = tone(1234.5, 1e-4);
     const QString file = m_card.folder() + QStringLiteral("/tone.wav");
     QVERIFY(tests::writeFloatWav(file, kRateHz, {left, right}));
@@ -218,17 +220,29 @@ void TestCardCapture::playedTone_comesBackSampleForSample()
         QCOMPARE(block->firstFrame, got.size() / 2);
         got.insert(got.end(), block->interleaved.begin(), block->interleaved.end());
     }
+    // The head of the tone may be missing: the server had already handed on silence for the time when the player came,
+    // up to two seconds. From the first sample that is heard to the last one played nothing may be missing or changed,
+    // for float goes in and float comes out.
     const auto first = std::ranges::find_if(got, [](float s) { return s != 0.0F; });
     QVERIFY(first != got.end());
     const auto begin = static_cast<std::size_t>(first - got.begin());
     QCOMPARE(begin % 2, 0U);
-    QVERIFY(got.size() >= begin + 2 * kFrames);
-    // Float goes in, float comes out: nothing on the way may change a bit.
-    std::size_t wrong = 0;
+    std::vector<float> played;
     for (std::size_t i = 0; i < kFrames; ++i) {
-        wrong += got[begin + 2 * i] == left[i] && got[begin + 2 * i + 1] == right[i] ? 0U : 1U;
+        played.push_back(left[i]);
+        played.push_back(right[i]);
+    }
+    constexpr std::ptrdiff_t kMatch = 32; // samples that tell where in the tone we are
+    const auto from = std::search(played.begin(), played.end(), first, first + kMatch);
+    const auto heard = static_cast<std::size_t>(played.end() - from);
+    QCOMPARE_GE(heard, std::size_t{2 * 3 * kRateHz});
+    QCOMPARE_LE(heard, got.size() - begin);
+    std::size_t wrong = 0;
+    for (std::size_t i = 0; i < heard; ++i) {
+        wrong += got[begin + i] == *(from + static_cast<std::ptrdiff_t>(i)) ? 0U : 1U;
     }
     QCOMPARE(wrong, 0U);
+    qInfo("%zu frames compared, all equal", heard / 2);
 }
 
 void TestCardCapture::nothingPlayed_isCalledSilent()

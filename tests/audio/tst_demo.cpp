@@ -158,19 +158,21 @@ private slots:
         QCOMPARE(pace.giveUp(2.01), std::uint64_t{0});
     }
 
+    // A ring outlives its source: it stands before it.
+
     void source_pushesWhatRenderDemoMakes()
     {
         DemoSettings settings;
         settings.rate = core::SampleRate{48e3};
         const auto trimmer = std::make_shared<DemoTrimmer>();
         trimmer->ohm = settings.trimmerOhm;
+        SampleRing ring(1, 48'000);
         const auto source = makeDemoSource(settings, trimmer);
         const auto format = source->open();
         QVERIFY(format.has_value());
         QCOMPARE(format->channels, 1);
         QCOMPARE(format->rate.hz, 48e3);
 
-        SampleRing ring(1, 48'000);
         QVERIFY(source->start(ring).has_value());
         QCOMPARE(source->status().condition, SourceCondition::Running);
         QTRY_VERIFY(ring.framesSeen() >= 9600);
@@ -197,9 +199,9 @@ private slots:
     void source_keepsToTheClock()
     {
         const auto trimmer = std::make_shared<DemoTrimmer>();
+        SampleRing ring(1, 96'000);
         const auto source = makeDemoSource(DemoSettings{}, trimmer);
         QVERIFY(source->open().has_value());
-        SampleRing ring(1, 96'000);
         const auto begin = std::chrono::steady_clock::now();
         QVERIFY(source->start(ring).has_value());
         QTRY_VERIFY(ring.framesSeen() >= 48'000);
@@ -211,9 +213,9 @@ private slots:
     void fullRing_countsWhatItDrops()
     {
         const auto trimmer = std::make_shared<DemoTrimmer>();
+        SampleRing ring(1, 1000); // two blocks; nobody pops
         const auto source = makeDemoSource(DemoSettings{}, trimmer);
         QVERIFY(source->open().has_value());
-        SampleRing ring(1, 1000); // two blocks; nobody pops
         QVERIFY(source->start(ring).has_value());
         QTRY_VERIFY(ring.framesLost() >= 960);
     }
@@ -221,9 +223,9 @@ private slots:
     void movedTrimmer_isHeard()
     {
         const auto trimmer = std::make_shared<DemoTrimmer>();
+        SampleRing ring(1, 9600);
         const auto source = makeDemoSource(DemoSettings{}, trimmer);
         QVERIFY(source->open().has_value());
-        SampleRing ring(1, 9600);
         float peak = 0.0F;
         const auto listen = [&] {
             while (const auto block = ring.pop()) {

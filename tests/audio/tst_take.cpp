@@ -115,6 +115,8 @@ public:
     }
     PlainUser(const PlainUser&) = delete;
     PlainUser& operator=(const PlainUser&) = delete;
+    PlainUser(PlainUser&&) = delete;
+    PlainUser& operator=(PlainUser&&) = delete;
 
 private:
     bool m_wasRoot;

@@ -23,6 +23,8 @@ public:
     ~VirtualCard(); ///< ends player and server, by their own process ids
     VirtualCard(const VirtualCard&) = delete;
     VirtualCard& operator=(const VirtualCard&) = delete;
+    VirtualCard(VirtualCard&&) = delete;
+    VirtualCard& operator=(VirtualCard&&) = delete;
 
     /// What a program must have installed; empty when all is there. For QSKIP.
     [[nodiscard]] static QString missingProgram();
