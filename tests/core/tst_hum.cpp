@@ -1,12 +1,12 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "core/measure/hum.h"
-#include "core/measure/meter.h"
 
 #include <QTest>
 
 #include <algorithm>
 #include <cmath>
 
+#include "tests/support/reader.h"
 #include "tests/support/signals.h"
 
 using namespace sinewright;
@@ -25,11 +25,7 @@ private slots:
     void strongerFamily_wins();
 
 private:
-    core::Meter m_meter;
-    [[nodiscard]] Reading read(const std::vector<double>& samples)
-    {
-        return m_meter.measure(samples, {48000.0}, {}).reading;
-    }
+    tests::Reader read;
 };
 
 namespace {

@@ -1,6 +1,5 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "core/measure/measure.h"
-#include "core/measure/meter.h"
 
 #include <QTest>
 
@@ -8,6 +7,7 @@
 #include <cmath>
 #include <numbers>
 
+#include "tests/support/reader.h"
 #include "tests/support/signals.h"
 
 using namespace sinewright;
@@ -41,13 +41,7 @@ private slots:
     void figures_areNeverNaN();
 
 private:
-    core::Meter m_meter;
-    [[nodiscard]] Reading read(const std::vector<double>& samples,
-                               double rateHz = 48000.0,
-                               const core::MeasureSettings& settings = {})
-    {
-        return m_meter.measure(samples, {rateHz}, settings).reading;
-    }
+    tests::Reader read;
 };
 
 using Samples = std::vector<double>;
