@@ -193,7 +193,6 @@ private:
     /// A second line, no harmonic of the first, within 6 dB of it.
     [[nodiscard]] bool hasRival(const ResidualSpectrum& spectrum, double amplitude) const
     {
-        const double periods = m_model.periods;
         const auto first = static_cast<std::size_t>(
             std::max(2.0, std::ceil(binsOf(kLowestToneHz) / (spectrum.position(1)))));
         // Between two bins a line shows a tenth of an amplitude less power than it has at the least.
@@ -205,10 +204,7 @@ private:
             if (spectrum.powerFs2(index) < worthALook) {
                 continue;
             }
-            const double order = std::max(1.0, std::round(spectrum.position(index) / periods));
-            constexpr double kLobeBins = 2.0;
-            if (std::abs(spectrum.position(index) - order * periods) <= kLobeBins ||
-                spectrum.isInGap(spectrum.position(index), 1.0)) {
+            if (spectrum.isNearMultiple(spectrum.position(index), 1.0)) {
                 continue;
             }
             if (spectrum.lineAt(index).amplitude >= kRivalRatio * amplitude) {

@@ -85,6 +85,11 @@ bool ResidualSpectrum::isInGap(double bins, double extraBins) const
            (above != m_lines.begin() && bins - *(above - 1) <= reach) || bins <= reach;
 }
 
+bool ResidualSpectrum::isNearMultiple(double bins, double extraBins) const
+{
+    return std::abs(std::remainder(bins, m_lines.front())) <= m_gapBins + extraBins;
+}
+
 ResidualSpectrum::Density
 ResidualSpectrum::localDensity(double bins, double lowBins, double highBins) const
 {

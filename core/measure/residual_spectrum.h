@@ -90,6 +90,10 @@ public:
     /// True within `extraBins` of a gap.
     [[nodiscard]] bool isInGap(double bins, double extraBins = 0.0) const;
 
+    /// True where the fundamental or any multiple of it lies within a gap and `extraBins`, whether it was taken out or
+    /// not.
+    [[nodiscard]] bool isNearMultiple(double bins, double extraBins) const;
+
 private:
     [[nodiscard]] std::complex<double> smooth(std::size_t index) const;
 

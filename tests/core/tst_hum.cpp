@@ -23,6 +23,8 @@ private slots:
     void fundamentalAndHarmonics_areNotHum_data();
     void fundamentalAndHarmonics_areNotHum();
     void strongerFamily_wins();
+    void flankOfAMovingTone_isNotHum_data();
+    void flankOfAMovingTone_isNotHum();
 
 private:
     tests::Reader read;
@@ -93,6 +95,7 @@ void TestHum::fundamentalAndHarmonics_areNotHum_data()
     QTest::newRow("tone at 100 Hz, harmonics on the family") << 100.0;
     QTest::newRow("tone at 60.02 Hz") << 60.02;
     QTest::newRow("tone at 25 Hz, its second on 50 Hz") << 25.0;
+    QTest::newRow("tone at 22.73 Hz, its eleventh near 250 Hz") << 22.73;
 }
 
 void TestHum::fundamentalAndHarmonics_areNotHum()
@@ -100,7 +103,8 @@ void TestHum::fundamentalAndHarmonics_areNotHum()
     QFETCH(double, toneHz);
     const tests::ToneSpec spec{
         .frequencyHz = toneHz,
-        .partials = {{2, 1e-3, 0.0}, {3, 1e-3, 0.0}, {4, 1e-4, 0.0}, {6, 1e-4, 0.0}}};
+        .partials = {
+            {2, 1e-3, 0.0}, {3, 1e-3, 0.0}, {4, 1e-4, 0.0}, {6, 1e-4, 0.0}, {11, 1e-3, 0.0}}};
     const Reading reading =
         read(tests::sum(tests::tone(spec, kCount), tests::whiteNoise(1e-5, kCount, 2)));
     QCOMPARE(reading.status, core::ReadingStatus::Ok);
@@ -112,6 +116,28 @@ void TestHum::strongerFamily_wins()
     const auto both = tests::sum(withLine(997.0, 50.0, -70.0, 3),
                                  tests::tone({.frequencyHz = 120.0, .amplitude = 0.5e-4}, kCount));
     QCOMPARE_LE(std::abs(*read(both).mainsHumDbc + 70.0), 0.15);
+}
+
+void TestHum::flankOfAMovingTone_isNotHum_data()
+{
+    QTest::addColumn<double>("toneHz");
+    for (const double tone : {43.0, 111.0, 118.9, 155.0, 310.0}) {
+        QTest::addRow("dying and bouncing tone at %.1f Hz", tone) << tone;
+    }
+}
+
+void TestHum::flankOfAMovingTone_isNotHum()
+{
+    QFETCH(double, toneHz);
+    auto samples = tests::tone({.frequencyHz = toneHz}, kCount);
+    for (std::size_t n = 0; n < kCount; ++n) {
+        const double t = static_cast<double>(n) / 48000.0;
+        samples[n] *= 0.3 + 0.7 * std::exp(-t) * (1.0 - 0.5 * std::sin(9.0 * t) * std::exp(-t));
+    }
+    const Reading reading =
+        read(tests::sum(std::move(samples), tests::whiteNoise(1e-6, kCount, 6)));
+    QCOMPARE(reading.status, core::ReadingStatus::Ok);
+    QVERIFY(!reading.mainsHumDbc);
 }
 
 QTEST_APPLESS_MAIN(TestHum)
