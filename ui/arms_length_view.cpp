@@ -18,7 +18,7 @@ namespace {
 
 constexpr int kThirdOfWindow = 3;
 constexpr double kUnitShare = 0.32; ///< height of the percent sign over that of the digits
-constexpr double kGap = 0.12;       ///< between digits and unit, over the font's size
+constexpr double kGap = 0.05;       ///< between digits and unit, over the font's size
 constexpr qint64 kShowEveryMs = 240;
 constexpr int kMargin = 36;
 

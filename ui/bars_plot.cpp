@@ -22,23 +22,24 @@ constexpr int kDefaultHighestOrder = 10;
 
 BarsPlot::BarsPlot(QWidget* parent) : Plot(u"harmonics"_s, tr("Harmonics"), u"dBc"_s, parent), m_orders(QSharedPointer<NumberTicker>::create(1.0))
 {
+    setSideMargins(34, 8);
     yAxis->setTicker(QSharedPointer<NumberTicker>::create(kStepDb));
     xAxis->setTicker(m_orders);
     xAxis->grid()->setVisible(false);
     xAxis->setTickLength(0, 0);
     new Overprint(this, u"main"_s, [this](QCPPainter& painter) { paintBars(painter); });
     restyle();
-    show();
+    present();
 }
 
 void BarsPlot::setFrame(std::shared_ptr<const core::Frame> frame)
 {
     m_model.setFrame(std::move(frame));
-    show();
+    present();
     draw();
 }
 
-void BarsPlot::show()
+void BarsPlot::present()
 {
     const int highest = m_model.isEmpty() ? kDefaultHighestOrder : m_model.bars().back().order;
     xAxis->setRange(1.4, highest + 0.6);

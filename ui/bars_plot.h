@@ -20,7 +20,7 @@ protected:
     void restyle() override;
 
 private:
-    void show();
+    void present();
     void paintBars(QCPPainter& painter) const;
 
     BarsModel m_model;

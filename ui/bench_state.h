@@ -36,4 +36,12 @@ struct BenchState {
     double trimmerHighestOhm = 0.0;
 };
 
+/// Nothing comes in any more: what is shown is the last that was measured.
+[[nodiscard]] inline bool isStale(const BenchState& state)
+{
+    using Condition = BenchState::Condition;
+    return state.condition == Condition::Lost || state.condition == Condition::Ended ||
+           state.condition == Condition::Failed;
+}
+
 } // namespace sinewright::ui

@@ -34,17 +34,17 @@ CyclePlot::CyclePlot(QWidget* parent)
         graph->setAdaptiveSampling(false);
     }
     restyle();
-    show();
+    present();
 }
 
 void CyclePlot::setFrame(std::shared_ptr<const core::Frame> frame)
 {
     m_model.setFrame(std::move(frame));
-    show();
+    present();
     draw();
 }
 
-void CyclePlot::show()
+void CyclePlot::present()
 {
     fill(*m_cycle, m_model.cycle());
     fill(*m_residual, m_model.residual());

@@ -19,7 +19,7 @@ protected:
     void restyle() override;
 
 private:
-    void show();
+    void present();
 
     CycleModel m_model;
     QCPGraph* m_cycle;

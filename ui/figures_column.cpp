@@ -31,6 +31,11 @@ constexpr double kPlainHeight = 600.0; ///< of the column; a higher one has larg
 constexpr double kLargestScale = 1.4;
 constexpr qint64 kShowEveryMs = 240;
 
+QString underText(std::optional<double> ratio)
+{
+    return ratio ? joined(ratioDecibelFigure(ratio, 1, u"dB"_s)) : QString();
+}
+
 } // namespace
 
 FiguresColumn::FiguresColumn(QWidget* parent) : QWidget(parent), m_theme(&ui::theme(ThemeName::Paper))
@@ -65,13 +70,22 @@ void FiguresColumn::setFrame(const std::shared_ptr<const core::Frame>& frame)
     update();
 }
 
+void FiguresColumn::setStale(bool isStale)
+{
+    if (isStale != m_isStale) {
+        m_isStale = isStale;
+        rebuild();
+        update();
+    }
+}
+
 void FiguresColumn::rebuild()
 {
     static const core::Reading kNothing;
     const ShownReading shown = m_frame ? shownReading(*m_frame) : ShownReading{&kNothing, false};
     const core::Reading& reading = *shown.reading;
     const int digits = shown.isFull ? kFullDigits : kQuickDigits;
-    const QString kind = !m_frame ? QString() : shown.isFull ? tr("full reading") : tr("quick reading");
+    const QString kind = !m_frame ? QString() : m_isStale ? tr("last reading") : shown.isFull ? tr("full reading") : tr("quick reading");
 
     FigureText level = reading.levelVrms ? voltFigure(reading.levelVrms) : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s);
     const QString levelUnder = reading.levelVrms ? joined(decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)) : QString();
@@ -86,8 +100,8 @@ void FiguresColumn::rebuild()
                                                     : decibelFigure(best->levelDbfs, 2, u"dBFS"_s)));
     }
     m_blocks = {
-        {tr("THD"), kind, percentFigure(reading.thdRatio, digits), joined(ratioDecibelFigure(reading.thdRatio, 1, u"dB"_s)), false},
-        {tr("THD+N"), {}, percentFigure(reading.thdnRatio, digits), joined(ratioDecibelFigure(reading.thdnRatio, 1, u"dB"_s)), false},
+        {tr("THD"), kind, percentFigure(reading.thdRatio, digits), underText(reading.thdRatio), false},
+        {tr("THD+N"), {}, percentFigure(reading.thdnRatio, digits), underText(reading.thdnRatio), false},
         {tr("Frequency"), {}, frequencyFigure(reading.frequencyHz, reading.frequencyStdHz), {}, false},
         {tr("Level"), {}, level, levelUnder, false},
         {tr("Best so far"), {}, percentFigure(bestThd), bestUnder, true},
@@ -159,13 +173,19 @@ double FiguresColumn::paintBlock(QPainter& painter, const Block& block, double y
         painter.drawText(QPointF(x, labelBaseline), block.remark);
     }
     painter.setFont(displayFont(figurePixels));
-    painter.setPen(block.isBest ? m_theme->verdigris : &block == m_blocks.data() ? m_theme->copper : m_theme->ink);
+    const bool isAbsent = block.figure.value == kAbsent;
+    painter.setPen(isAbsent                       ? m_theme->inkSoft
+                   : block.isBest                 ? m_theme->verdigris
+                   : &block == m_blocks.data() && !m_isStale ? m_theme->copper
+                                                  : m_theme->ink);
     const QFontMetricsF metrics(painter.font());
     const double baseline = std::round(labelBaseline + px(kLabelGap) + metrics.capHeight());
     painter.drawText(QPointF(-1.0, baseline), block.figure.value);
     painter.setFont(figureFont(std::max(px(kUnderPixels + 1), figurePixels / 2)));
     painter.setPen(m_theme->inkSoft);
-    painter.drawText(QPointF(metrics.horizontalAdvance(block.figure.value) + px(5.0), baseline), block.figure.unit);
+    if (!isAbsent) {
+        painter.drawText(QPointF(metrics.horizontalAdvance(block.figure.value) + px(5.0), baseline), block.figure.unit);
+    }
     if (block.under.isEmpty()) {
         return baseline + 2.0;
     }
@@ -181,7 +201,9 @@ void FiguresColumn::paintLine(QPainter& painter, const Line& line, double baseli
     painter.drawText(QPointF(0.0, baseline), line.label);
     const QFontMetricsF metrics(painter.font());
     const double unitWidth = metrics.horizontalAdvance(u"dBFS"_s);
-    painter.drawText(QPointF(width() - unitWidth, baseline), line.figure.unit);
+    if (line.figure.value != kAbsent) {
+        painter.drawText(QPointF(width() - unitWidth, baseline), line.figure.unit);
+    }
     painter.setPen(m_theme->ink);
     painter.drawText(QPointF(width() - unitWidth - px(5.0) - metrics.horizontalAdvance(line.figure.value), baseline),
                      line.figure.value);

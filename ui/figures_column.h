@@ -36,6 +36,8 @@ public:
     void setTheme(const Theme& theme);
     /// Digits change a few times a second at the most, however many frames come.
     void setFrame(const std::shared_ptr<const core::Frame>& frame);
+    /// The source is gone: the figures are the last ones, and say so.
+    void setStale(bool isStale);
     [[nodiscard]] const std::vector<Block>& blocks() const { return m_blocks; }
     [[nodiscard]] const std::vector<Line>& lines() const { return m_lines; }
     [[nodiscard]] QSize sizeHint() const override;
@@ -57,6 +59,7 @@ private:
     std::vector<Block> m_blocks;
     std::vector<Line> m_lines;
     QString m_remarks;
+    bool m_isStale = false;
     QElapsedTimer m_sinceShown;
 };
 

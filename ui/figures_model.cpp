@@ -51,6 +51,11 @@ void addHarmonics(std::vector<FigureRow>& rows, const core::Reading& reading, in
     }
 }
 
+Qt::Alignment alignmentOf(int column)
+{
+    return (column == FiguresModel::Value ? Qt::AlignRight : Qt::AlignLeft) | Qt::AlignVCenter;
+}
+
 } // namespace
 
 std::vector<FigureRow> figureRows(const core::Frame* frame)
@@ -108,7 +113,7 @@ QVariant FiguresModel::data(const QModelIndex& index, int role) const
         return {};
     }
     if (role == Qt::TextAlignmentRole) {
-        return QVariant(index.column() == Value ? Qt::AlignRight | Qt::AlignVCenter : Qt::AlignLeft | Qt::AlignVCenter);
+        return QVariant(alignmentOf(index.column()));
     }
     if (role != Qt::DisplayRole) {
         return {};
@@ -130,6 +135,9 @@ QVariant FiguresModel::data(const QModelIndex& index, int role) const
 
 QVariant FiguresModel::headerData(int section, Qt::Orientation orientation, int role) const
 {
+    if (orientation == Qt::Horizontal && role == Qt::TextAlignmentRole) {
+        return QVariant(alignmentOf(section));
+    }
     if (orientation != Qt::Horizontal || role != Qt::DisplayRole) {
         return {};
     }

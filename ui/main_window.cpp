@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/main_window.h"
 
+#include <QCursor>
 #include <QDialog>
 #include <QElapsedTimer>
 #include <QHBoxLayout>
@@ -58,6 +59,7 @@ public:
     void setBench(const BenchState& state);
     void applyView(const ViewSettings& settings);
     void poll();
+    void drawPending();
     void showNow();
     void startPolling();
     void focusPage();
@@ -89,6 +91,7 @@ public:
     LevelUnit m_spectrumUnit = LevelUnit::Dbc;
     bool m_isQuiet = false; ///< settings are being restored: nothing to announce
     bool m_wasMaximised = false;
+    bool m_isDrawPending = false;
     qint64 m_tableAtMs = 0;
 
 private:
@@ -285,7 +288,8 @@ void MainWindow::Impl::savePage()
 void MainWindow::Impl::savePlot()
 {
     const QList<Plot*> plots = page()->plots();
-    const auto at = std::find_if(plots.begin(), plots.end(), [](const Plot* plot) { return plot->underMouse(); });
+    const QWidget* pointed = m_window.childAt(m_window.mapFromGlobal(QCursor::pos()));
+    const auto at = std::find(plots.begin(), plots.end(), pointed);
     if (at == plots.end()) {
         m_window.showNotice(tr("Point at a plot first: the picture is taken of the one under the pointer."));
         return;
@@ -312,10 +316,10 @@ void MainWindow::Impl::showTable()
     table->verticalHeader()->hide();
     table->horizontalHeader()->setStretchLastSection(true);
     table->horizontalHeader()->setHighlightSections(false);
-    table->horizontalHeader()->setDefaultAlignment(Qt::AlignLeft | Qt::AlignVCenter);
     m_figures.setFrame(m_shown.get());
     table->resizeColumnsToContents();
     column->addWidget(table, 1);
+    table->selectRow(0);
     dialog->show();
     table->setFocus();
 }
@@ -347,6 +351,7 @@ void MainWindow::Impl::poll()
     }
     std::shared_ptr<const core::Frame> frame = m_feed();
     if (frame == m_newest) {
+        drawPending(); // the newest frame may have been passed over, and no other came
         updateAdvice();
         return;
     }
@@ -361,8 +366,9 @@ void MainWindow::Impl::poll()
         return;
     }
     m_shown = m_newest;
+    m_isDrawPending = true;
     if (m_pace.isDue(lastDrawMs())) {
-        page()->showFrame(m_shown);
+        drawPending();
     }
     if (m_clock.elapsed() - m_tableAtMs >= kTableEveryMs) {
         m_tableAtMs = m_clock.elapsed();
@@ -371,9 +377,18 @@ void MainWindow::Impl::poll()
     updateAdvice();
 }
 
+void MainWindow::Impl::drawPending()
+{
+    if (m_isDrawPending) {
+        m_isDrawPending = false;
+        page()->showFrame(m_shown);
+    }
+}
+
 void MainWindow::Impl::showNow()
 {
-    page()->showFrame(m_shown);
+    m_isDrawPending = true;
+    drawPending();
     updateAdvice();
 }
 
@@ -390,6 +405,9 @@ void MainWindow::Impl::setBench(const BenchState& state)
     m_state = state;
     m_sources->setBenchState(state);
     m_bottom->setBenchState(state);
+    if (isStale(state)) {
+        m_sources->meter().clear();
+    }
     for (int i = 0; i < m_pages->count(); ++i) {
         qobject_cast<BenchPage*>(m_pages->widget(i))->showBench(state);
     }

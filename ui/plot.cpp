@@ -175,7 +175,11 @@ void Plot::paintNote(QCPPainter& painter) const
     font.setItalic(true);
     painter.setFont(font);
     painter.setPen(m_theme->inkSoft);
-    painter.drawText(axisRect()->rect().adjusted(12, 8, -12, -8), Qt::AlignCenter | Qt::TextWordWrap, m_note);
+    constexpr int kFlags = Qt::AlignCenter | Qt::TextWordWrap;
+    const QRect place = axisRect()->rect().adjusted(12, 8, -12, -8);
+    const QRect text = QFontMetrics(font).boundingRect(place, kFlags, m_note);
+    painter.fillRect(text.adjusted(-8, -2, 8, 2), m_theme->page);
+    painter.drawText(place, kFlags, m_note);
 }
 
 } // namespace sinewright::ui

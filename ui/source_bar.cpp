@@ -52,7 +52,8 @@ SourceBar::SourceBar(QWidget* parent)
     row->addWidget(labelled(tr("Rate"), m_rate));
     row->addWidget(labelled(tr("Channel"), m_channel));
     row->addStretch(1);
-    row->addWidget(m_meter, 2);
+    m_meter->setMaximumWidth(520);
+    row->addWidget(m_meter, 3);
     connect(m_picker, &ChoiceBox::aboutToOpen, this, &SourceBar::sourcesWanted);
     connect(m_picker, &QComboBox::activated, this, &SourceBar::pick);
     connect(m_rate, &QComboBox::activated, this, [this] { chooseAgain(); });

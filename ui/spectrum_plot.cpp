@@ -15,8 +15,9 @@ namespace {
 
 constexpr double kStepDb = 20.0;
 constexpr double kRoomiestDecades = 4.0;
-constexpr double kPixelsPerDecade = 84.0; ///< room that the numbers 1, 2, 5 want
+constexpr double kPixelsPerDecade = 76.0; ///< room that the numbers 1, 2, 5 want
 constexpr double kStemWidth = 2.0;
+constexpr double kNumberGap = 3.0;
 constexpr double kKilo = 1000.0;
 
 QString frequencyLabel(double hz)
@@ -43,25 +44,25 @@ SpectrumPlot::SpectrumPlot(QWidget* parent)
     }
     new Overprint(this, u"main"_s, [this](QCPPainter& painter) { paintStems(painter); });
     restyle();
-    show();
+    present();
 }
 
 void SpectrumPlot::setFrame(std::shared_ptr<const core::Frame> frame)
 {
     m_model.setColumns(columns());
     m_model.setFrame(std::move(frame));
-    show();
+    present();
     draw();
 }
 
 void SpectrumPlot::setUnit(LevelUnit unit)
 {
     m_model.setUnit(unit);
-    show();
+    present();
     draw();
 }
 
-void SpectrumPlot::show()
+void SpectrumPlot::present()
 {
     fill(*m_lowest, m_model.lowest());
     fill(*m_highest, m_model.highest());
@@ -91,7 +92,7 @@ void SpectrumPlot::resizeEvent(QResizeEvent* event)
 {
     Plot::resizeEvent(event);
     m_model.setColumns(columns());
-    show();
+    present();
 }
 
 void SpectrumPlot::paintStems(QCPPainter& painter) const
@@ -99,21 +100,33 @@ void SpectrumPlot::paintStems(QCPPainter& painter) const
     const QRect inside = axisRect()->rect();
     painter.setFont(figureFont(typeSize()));
     const QFontMetricsF metrics(painter.font());
-    double freeFrom = -std::numeric_limits<double>::infinity(); // where the next number finds room
+    struct Placed {
+        const Stem* stem = nullptr;
+        QPointF top;
+    };
+    std::vector<Placed> placed;
     for (const Stem& stem : m_model.stems()) {
-        const double x = xAxis->coordToPixel(stem.frequencyHz);
-        const double y = std::max<double>(yAxis->coordToPixel(stem.levelDb), inside.top());
-        if (x > inside.right() || y > inside.bottom()) {
-            continue;
+        const QPointF top(xAxis->coordToPixel(stem.frequencyHz),
+                          std::max<double>(yAxis->coordToPixel(stem.levelDb), inside.top()));
+        if (top.x() <= inside.right() && top.y() < inside.bottom()) {
+            placed.push_back({&stem, top});
+            painter.setPen(QPen(stem.order == 1 ? colours().ink : colours().slate, kStemWidth,
+                                stem.inBand ? Qt::SolidLine : Qt::DotLine, Qt::FlatCap));
+            painter.drawLine(QPointF(top.x(), inside.bottom()), top);
         }
-        const QColor colour = stem.order == 1 ? colours().ink : colours().slate;
-        painter.setPen(QPen(colour, kStemWidth, stem.inBand ? Qt::SolidLine : Qt::DotLine, Qt::FlatCap));
-        painter.drawLine(QPointF(x, inside.bottom()), QPointF(x, y));
-        const QString number = QString::number(stem.order);
-        const double width = metrics.horizontalAdvance(number);
-        if (x - width / 2.0 >= freeFrom) {
-            painter.drawText(QPointF(x - width / 2.0, y - 3.0), number);
-            freeFrom = x + width / 2.0 + 2.0;
+    }
+    // A number is left out where a taller stem or its number would run through it.
+    for (const Placed& own : placed) {
+        const QString number = QString::number(own.stem->order);
+        const double half = metrics.horizontalAdvance(number) / 2.0;
+        const bool isCrossed = std::any_of(placed.begin(), placed.end(), [&](const Placed& other) {
+            return other.stem != own.stem && other.top.y() < own.top.y() + metrics.capHeight() &&
+                   (other.top.y() < own.top.y() || other.stem->order < own.stem->order) &&
+                   std::abs(other.top.x() - own.top.x()) < half + kStemWidth;
+        });
+        if (!isCrossed) {
+            painter.setPen(own.stem->order == 1 ? colours().ink : colours().slate);
+            painter.drawText(QPointF(own.top.x() - half, own.top.y() - kNumberGap), number);
         }
     }
 }

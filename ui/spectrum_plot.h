@@ -22,7 +22,7 @@ protected:
     void resizeEvent(QResizeEvent* event) override;
 
 private:
-    void show();
+    void present();
     void paintStems(QCPPainter& painter) const;
 
     SpectrumModel m_model;

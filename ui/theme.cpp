@@ -139,8 +139,8 @@ QPushButton:hover { border-color: @ink; }
 QPushButton:focus { border: 2px solid @copper; padding: 4px 13px; }
 QPushButton:pressed, QPushButton:checked { background: @wash; }
 QRadioButton { spacing: 7px; color: @ink; }
-QRadioButton::indicator { width: 11px; height: 11px; border-radius: 6px; border: 1px solid @inkSoft; background: @page; }
-QRadioButton::indicator:checked { width: 5px; height: 5px; border: 4px solid @copper; }
+QRadioButton::indicator { width: 12px; height: 12px; border-radius: 7px; border: 1px solid @inkSoft; background: @page; }
+QRadioButton::indicator:checked { width: 6px; height: 6px; border: 4px solid @copper; }
 QRadioButton:focus { color: @copper; }
 QTableView { background: @page; color: @ink; border: none; gridline-color: @grid;
   selection-background-color: @slate; selection-color: @page; }

@@ -65,18 +65,18 @@ TrendPlot::TrendPlot(QWidget* parent)
         paintNow(painter);
     });
     restyle();
-    show();
+    present();
 }
 
 void TrendPlot::setFrame(std::shared_ptr<const core::Frame> frame)
 {
     m_model.setColumns(columns());
     m_model.setFrame(std::move(frame));
-    show();
+    present();
     draw();
 }
 
-void TrendPlot::show()
+void TrendPlot::present()
 {
     fill(*m_thd, m_model.thd());
     fill(*m_thdn, m_model.thdn());
@@ -118,7 +118,7 @@ void TrendPlot::paintBest(QCPPainter& painter) const
     if (!m_model.best()) {
         return;
     }
-    const double y = std::round(yAxis->coordToPixel(m_model.best()->percent)) + 0.5;
+    const double y = std::round(yAxis->coordToPixel(m_model.best()->percent));
     const QRect inside = axisRect()->rect();
     QPen rule(colours().verdigris, 1.2);
     rule.setDashPattern({8.0, 3.0});

@@ -20,7 +20,7 @@ protected:
     void resizeEvent(QResizeEvent* event) override;
 
 private:
-    void show();
+    void present();
     void paintBest(QCPPainter& painter) const;
     void paintNow(QCPPainter& painter) const;
 

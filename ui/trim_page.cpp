@@ -62,6 +62,7 @@ void TrimPage::showBench(const BenchState& state)
         m_trimmer->setTravel(state.trimmerLowestOhm, state.trimmerHighestOhm);
         m_trimmer->setOhm(*state.trimmerOhm);
     }
+    m_figures->setStale(isStale(state));
     const bool hadFocus = m_trimmer->hasFocus();
     m_trimmer->setVisible(isDemo);
     if (hadFocus && !isDemo) {

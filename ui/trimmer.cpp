@@ -62,6 +62,7 @@ void Trimmer::addKey(const QString& text, QKeySequence key, int steps)
     action->setShortcutContext(Qt::WidgetWithChildrenShortcut);
     action->setAutoRepeat(true);
     connect(action, &QAction::triggered, this, [this, steps] { turnBy(steps); });
+    addAction(action);
     m_keyActions << action;
 }
 
