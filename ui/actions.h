@@ -1,22 +1,24 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <array>
-
 #include <QAction>
 #include <QList>
 #include <QObject>
 
+#include <array>
+
 namespace sinewright::ui {
 
 /// A titled group of actions, as the list of keys shows it.
-struct ActionGroup {
+struct ActionGroup
+{
     QString title;
     QList<QAction*> actions;
 };
 
 /// Every command of the window, with its key. The list of keys is made from these.
-class Actions final : public QObject {
+class Actions final : public QObject
+{
     Q_OBJECT
 public:
     static constexpr int kPages = 5;
@@ -43,7 +45,8 @@ public:
     [[nodiscard]] QList<QAction*> all() const;
 
 private:
-    QAction* add(const QString& text, const QString& shortText, const QKeySequence& key, const QString& tip);
+    QAction*
+    add(const QString& text, const QString& shortText, const QKeySequence& key, const QString& tip);
     void addPages();
 };
 

@@ -1,23 +1,26 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/advice.h"
 
-#include <cmath>
-
 #include "ui/figure_text.h"
 #include "ui/reading_choice.h"
+
+#include <cmath>
 
 namespace sinewright::ui {
 
 namespace {
 
-constexpr qint64 kHoldMs = 700;          ///< how long a state lasts before it is said
-constexpr double kNewFrequency = 0.005;  ///< relative; less is the same frequency to a reader
-constexpr double kReachedBest = 1.03;    ///< quick readings scatter by 3 %
+constexpr qint64 kHoldMs = 700;         ///< how long a state lasts before it is said
+constexpr double kNewFrequency = 0.005; ///< relative; less is the same frequency to a reader
+constexpr double kReachedBest = 1.03;   ///< quick readings scatter by 3 %
 constexpr double kLeftBest = 1.06;
 
 } // namespace
 
-bool AdviceLine::update(const BenchState& bench, const core::Frame* frame, bool isFrozen, qint64 nowMs)
+bool AdviceLine::update(const BenchState& bench,
+                        const core::Frame* frame,
+                        bool isFrozen,
+                        qint64 nowMs)
 {
     const Topic topic = topicOf(bench, frame, isFrozen);
     if (topic != m_candidate) {
@@ -33,14 +36,16 @@ bool AdviceLine::update(const BenchState& bench, const core::Frame* frame, bool 
         return false;
     }
     const QString text = sentence(m_topic, bench, frame);
-    const bool isAlert = m_topic == Topic::Failed || m_topic == Topic::Lost || m_topic == Topic::Overload;
+    const bool isAlert =
+        m_topic == Topic::Failed || m_topic == Topic::Lost || m_topic == Topic::Overload;
     const bool hasChanged = text != m_text || isAlert != m_isAlert;
     m_text = text;
     m_isAlert = isAlert;
     return hasChanged;
 }
 
-AdviceLine::Topic AdviceLine::topicOf(const BenchState& bench, const core::Frame* frame, bool isFrozen)
+AdviceLine::Topic
+AdviceLine::topicOf(const BenchState& bench, const core::Frame* frame, bool isFrozen)
 {
     using Condition = BenchState::Condition;
     if (isFrozen) {
@@ -82,8 +87,8 @@ AdviceLine::Topic AdviceLine::topicOf(const BenchState& bench, const core::Frame
 
 bool AdviceLine::isSaidAtOnce(Topic topic)
 {
-    return topic == Topic::Failed || topic == Topic::Lost || topic == Topic::Ended || topic == Topic::Frozen ||
-           topic == Topic::Overload;
+    return topic == Topic::Failed || topic == Topic::Lost || topic == Topic::Ended ||
+           topic == Topic::Frozen || topic == Topic::Overload;
 }
 
 QString AdviceLine::sentence(Topic topic, const BenchState& bench, const core::Frame* frame)
@@ -92,21 +97,26 @@ QString AdviceLine::sentence(Topic topic, const BenchState& bench, const core::F
     case Topic::Starting:
         return tr("Starting to listen: the first reading is on its way.");
     case Topic::Failed:
-        return bench.message.isEmpty() ? tr("The source cannot be opened: choose another one above.") : bench.message;
-    case Topic::Lost:
         return bench.message.isEmpty()
-                   ? tr("The source went away: check its cable; listening goes on by itself when it is back.")
+                   ? tr("The source cannot be opened: choose another one above.")
                    : bench.message;
+    case Topic::Lost:
+        return bench.message.isEmpty() ? tr("The source went away: check its cable; listening goes "
+                                            "on by itself when it is back.")
+                                       : bench.message;
     case Topic::Ended:
         return tr("The take has been played to its end: choose it again to hear it once more.");
     case Topic::Silent:
-        return tr("Nothing but zeros comes in: check the channel, the cable and whether the input is muted.");
+        return tr("Nothing but zeros comes in: check the channel, the cable and whether the input "
+                  "is muted.");
     case Topic::Frozen:
         return tr("Frozen: the figures stand still until you let them go on.");
     case Topic::Overload:
-        return tr("The input is overloaded: turn the interface's gain down or put an attenuator in front.");
+        return tr("The input is overloaded: turn the interface's gain down or put an attenuator in "
+                  "front.");
     case Topic::NoTone:
-        return tr("No tone yet: check the cable, and whether the oscillator has its supply and runs.");
+        return tr(
+            "No tone yet: check the cable, and whether the oscillator has its supply and runs.");
     case Topic::TooShort:
         return tr("Listening: not enough signal yet for a reading.");
     case Topic::Moving:
@@ -122,7 +132,8 @@ QString AdviceLine::sentence(Topic topic, const BenchState& bench, const core::F
 QString AdviceLine::steadySentence(const core::Frame& frame)
 {
     const core::Reading& reading = *shownReading(frame).reading;
-    if (reading.frequencyHz && std::abs(*reading.frequencyHz - m_saidHz) > kNewFrequency * m_saidHz) {
+    if (reading.frequencyHz &&
+        std::abs(*reading.frequencyHz - m_saidHz) > kNewFrequency * m_saidHz) {
         m_saidHz = *reading.frequencyHz;
     }
     const QString frequency = roundFrequencyText(m_saidHz);
@@ -137,9 +148,10 @@ QString AdviceLine::steadySentence(const core::Frame& frame)
         m_isAtBest = *reading.thdRatio <= best.thdRatio * (m_isAtBest ? kLeftBest : kReachedBest);
     }
     const QString percent = joined(percentFigure(best.thdRatio, kQuickDigits));
-    return m_isAtBest ? tr("Steady at %1, and as good as it has been so far: %2.").arg(frequency, percent)
-                      : tr("Steady at %1. It has been better: %2, %3.")
-                            .arg(frequency, percent, ageText(frame.timeS - best.timeS));
+    return m_isAtBest
+               ? tr("Steady at %1, and as good as it has been so far: %2.").arg(frequency, percent)
+               : tr("Steady at %1. It has been better: %2, %3.")
+                     .arg(frequency, percent, ageText(frame.timeS - best.timeS));
 }
 
 QString ageText(double seconds)

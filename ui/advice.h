@@ -1,14 +1,14 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <memory>
-#include <optional>
+#include "core/measure/frame.h"
+#include "ui/bench_state.h"
 
 #include <QCoreApplication>
 #include <QString>
 
-#include "core/measure/frame.h"
-#include "ui/bench_state.h"
+#include <memory>
+#include <optional>
 
 namespace sinewright::ui {
 
@@ -17,7 +17,8 @@ namespace sinewright::ui {
 /// It speaks when the facts change and else keeps still: a new state has to last before it is said (losing the
 /// source, an overload, freezing are said at once), and figures in it are round and only replaced when they have
 /// really moved.
-class AdviceLine final {
+class AdviceLine final
+{
     Q_DECLARE_TR_FUNCTIONS(sinewright::ui::AdviceLine)
 public:
     /// @param frame  null: nothing came yet.   @param nowMs  any steady clock.
@@ -29,9 +30,23 @@ public:
     [[nodiscard]] bool isAlert() const { return m_isAlert; }
 
 private:
-    enum class Topic { Starting, Failed, Lost, Ended, Silent, Frozen, Overload, NoTone, TooShort, Moving, Wandering, Steady };
+    enum class Topic {
+        Starting,
+        Failed,
+        Lost,
+        Ended,
+        Silent,
+        Frozen,
+        Overload,
+        NoTone,
+        TooShort,
+        Moving,
+        Wandering,
+        Steady
+    };
 
-    [[nodiscard]] static Topic topicOf(const BenchState& bench, const core::Frame* frame, bool isFrozen);
+    [[nodiscard]] static Topic
+    topicOf(const BenchState& bench, const core::Frame* frame, bool isFrozen);
     [[nodiscard]] static bool isSaidAtOnce(Topic topic);
     [[nodiscard]] QString sentence(Topic topic, const BenchState& bench, const core::Frame* frame);
     [[nodiscard]] QString steadySentence(const core::Frame& frame);

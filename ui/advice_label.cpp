@@ -66,7 +66,8 @@ void AdviceLabel::fit()
     int pixels = m_largest;
     for (; pixels > m_smallest; --pixels) {
         const QFontMetrics metrics(sentenceFont(pixels));
-        const QRect needed = metrics.boundingRect(QRect(0, 0, width(), kUnbounded), Qt::TextWordWrap, text());
+        const QRect needed =
+            metrics.boundingRect(QRect(0, 0, width(), kUnbounded), Qt::TextWordWrap, text());
         if (needed.height() <= metrics.height() * m_lines && needed.width() <= width()) {
             break;
         }

@@ -1,14 +1,15 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <QLabel>
-
 #include "ui/theme.h"
+
+#include <QLabel>
 
 namespace sinewright::ui {
 
 /// The advice line as it is set: large serif, smaller only when the sentence would not fit.
-class AdviceLabel final : public QLabel {
+class AdviceLabel final : public QLabel
+{
     Q_OBJECT
 public:
     explicit AdviceLabel(QWidget* parent = nullptr);

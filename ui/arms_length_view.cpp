@@ -1,14 +1,14 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/arms_length_view.h"
 
+#include "ui/reading_choice.h"
+#include "ui/trend_plot.h"
+
 #include <QPainter>
 #include <QVBoxLayout>
 
 #include <algorithm>
 #include <cmath>
-
-#include "ui/reading_choice.h"
-#include "ui/trend_plot.h"
 
 namespace sinewright::ui {
 
@@ -53,8 +53,8 @@ int GreatFigure::fontPixels() const
     const QFontMetricsF digits(displayFont(kProbe));
     const QFontMetricsF unit(displayFont(static_cast<int>(kProbe * kUnitShare)));
     const double perHeight = kProbe / digits.capHeight();
-    const double widthAtProbe =
-        digits.horizontalAdvance(m_figure.value) + kGap * kProbe + unit.horizontalAdvance(m_figure.unit);
+    const double widthAtProbe = digits.horizontalAdvance(m_figure.value) + kGap * kProbe +
+                                unit.horizontalAdvance(m_figure.unit);
     const double wanted = window()->height() / static_cast<double>(kThirdOfWindow) * perHeight;
     return static_cast<int>(std::min(wanted, kProbe * width() / widthAtProbe));
 }
@@ -80,7 +80,10 @@ void GreatFigure::paintEvent(QPaintEvent* /*event*/)
 }
 
 ArmsLengthView::ArmsLengthView(QWidget* parent)
-    : BenchPage(parent), m_great(new GreatFigure(this)), m_advice(new AdviceLabel(this)), m_trend(new TrendPlot(this))
+    : BenchPage(parent)
+    , m_great(new GreatFigure(this))
+    , m_advice(new AdviceLabel(this))
+    , m_trend(new TrendPlot(this))
 {
     setAccessibleName(tr("Arm's length view"));
     m_trend->setTypeSize(16);

@@ -1,18 +1,19 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <QElapsedTimer>
-
 #include "ui/advice_label.h"
 #include "ui/bench_page.h"
 #include "ui/figure_text.h"
+
+#include <QElapsedTimer>
 
 namespace sinewright::ui {
 
 class TrendPlot;
 
 /// THD to be read from across the bench, a third of the window high.
-class GreatFigure final : public QWidget {
+class GreatFigure final : public QWidget
+{
     Q_OBJECT
 public:
     explicit GreatFigure(QWidget* parent = nullptr);
@@ -33,7 +34,8 @@ private:
 };
 
 /// The full-screen view: THD, the advice line, the trend; nothing else.
-class ArmsLengthView final : public BenchPage {
+class ArmsLengthView final : public BenchPage
+{
     Q_OBJECT
 public:
     explicit ArmsLengthView(QWidget* parent = nullptr);

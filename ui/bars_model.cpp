@@ -1,11 +1,11 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/bars_model.h"
 
-#include <algorithm>
-#include <cmath>
-
 #include "core/units.h"
 #include "ui/reading_choice.h"
+
+#include <algorithm>
+#include <cmath>
 
 namespace sinewright::ui {
 
@@ -17,9 +17,7 @@ constexpr double kLowestFloorDbc = -200.0;
 
 } // namespace
 
-BarsModel::BarsModel(QObject* parent) : QObject(parent)
-{
-}
+BarsModel::BarsModel(QObject* parent) : QObject(parent) {}
 
 void BarsModel::setFrame(std::shared_ptr<const core::Frame> frame)
 {

@@ -1,26 +1,28 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "core/measure/frame.h"
+#include "ui/range_choice.h"
+
+#include <QObject>
+
 #include <memory>
 #include <optional>
 #include <vector>
 
-#include <QObject>
-
-#include "core/measure/frame.h"
-#include "ui/range_choice.h"
-
 namespace sinewright::ui {
 
 /// One harmonic's bar. Without a level (nothing found) there is a place for it but no bar.
-struct HarmonicBar {
+struct HarmonicBar
+{
     int order = 2;
     std::optional<double> dbc;
     bool inBand = true; ///< drawn hollow when false: it does not count for THD
 };
 
 /// The harmonic bars: which rows there are, how high, on which axis.
-class BarsModel final : public QObject {
+class BarsModel final : public QObject
+{
     Q_OBJECT
 public:
     explicit BarsModel(QObject* parent = nullptr);

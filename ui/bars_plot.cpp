@@ -1,10 +1,10 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/bars_plot.h"
 
+#include "ui/figure_text.h"
+
 #include <algorithm>
 #include <cmath>
-
-#include "ui/figure_text.h"
 
 namespace sinewright::ui {
 
@@ -20,7 +20,9 @@ constexpr int kDefaultHighestOrder = 10;
 
 } // namespace
 
-BarsPlot::BarsPlot(QWidget* parent) : Plot(u"harmonics"_s, tr("Harmonics"), u"dBc"_s, parent), m_orders(QSharedPointer<NumberTicker>::create(1.0))
+BarsPlot::BarsPlot(QWidget* parent)
+    : Plot(u"harmonics"_s, tr("Harmonics"), u"dBc"_s, parent)
+    , m_orders(QSharedPointer<NumberTicker>::create(1.0))
 {
     setSideMargins(34, 8);
     yAxis->setTicker(QSharedPointer<NumberTicker>::create(kStepDb));
@@ -49,9 +51,7 @@ void BarsPlot::present()
     setNote(m_model.isEmpty() ? tr("No tone, no harmonics.") : QString());
 }
 
-void BarsPlot::restyle()
-{
-}
+void BarsPlot::restyle() {}
 
 void BarsPlot::paintBars(QCPPainter& painter) const
 {
@@ -68,7 +68,8 @@ void BarsPlot::paintBars(QCPPainter& painter) const
             continue;
         }
         const double x = xAxis->coordToPixel(bar.order);
-        const double top = std::round(yAxis->coordToPixel(std::min(*bar.dbc, m_model.range().high)));
+        const double top =
+            std::round(yAxis->coordToPixel(std::min(*bar.dbc, m_model.range().high)));
         const QRectF box(std::round(x - width / 2.0), top, width, inside.bottom() - top);
         if (bar.inBand) {
             painter.fillRect(box, colours().slate);
@@ -79,7 +80,8 @@ void BarsPlot::paintBars(QCPPainter& painter) const
         if (hasRoomForNumber) {
             const QString number = numberText(*bar.dbc, hasRoomForDecimal ? 1 : 0);
             painter.setPen(colours().ink);
-            painter.drawText(QPointF(x - metrics.horizontalAdvance(number) / 2.0, top - kNumberGap), number);
+            painter.drawText(QPointF(x - metrics.horizontalAdvance(number) / 2.0, top - kNumberGap),
+                             number);
         }
     }
 }

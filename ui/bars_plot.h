@@ -8,7 +8,8 @@
 namespace sinewright::ui {
 
 /// Harmonics as bars over a dBc axis, each with its level on top; hollow where it lies above the band.
-class BarsPlot final : public Plot {
+class BarsPlot final : public Plot
+{
     Q_OBJECT
 public:
     explicit BarsPlot(QWidget* parent = nullptr);

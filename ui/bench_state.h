@@ -1,10 +1,10 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <optional>
-
 #include <QList>
 #include <QString>
+
+#include <optional>
 
 namespace sinewright::ui {
 
@@ -12,7 +12,8 @@ namespace sinewright::ui {
 enum class SourceKind { Demo, Card, Take };
 
 /// One entry of the source picker, or what the user chose with it.
-struct SourceChoice {
+struct SourceChoice
+{
     SourceKind kind = SourceKind::Demo;
     QString id;    ///< what the command line would call it: "demo", "card:NAME", a file's path
     QString label; ///< shown in the picker
@@ -21,16 +22,17 @@ struct SourceChoice {
 };
 
 /// How the bench stands, for bottom line, banner and level meter.
-struct BenchState {
+struct BenchState
+{
     enum class Condition { Starting, Running, Silent, Lost, Ended, Failed };
     Condition condition = Condition::Starting;
     SourceChoice source;
     double rateHz = 0.0;
     int channel = 1;
     int channels = 1;
-    QString message;           ///< what is wrong and what to try; empty while all is well
+    QString message; ///< what is wrong and what to try; empty while all is well
     quint64 framesLost = 0;
-    QString sessionFile;       ///< empty: nothing is being stored
+    QString sessionFile;              ///< empty: nothing is being stored
     std::optional<double> trimmerOhm; ///< where the virtual trimmer stands; demo only
     double trimmerLowestOhm = 0.0;
     double trimmerHighestOhm = 0.0;

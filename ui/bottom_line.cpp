@@ -1,14 +1,14 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/bottom_line.h"
 
+#include "ui/figure_text.h"
+#include "ui/theme.h"
+
 #include <QHBoxLayout>
 #include <QLocale>
 
 #include <algorithm>
 #include <chrono>
-
-#include "ui/figure_text.h"
-#include "ui/theme.h"
 
 namespace sinewright::ui {
 
@@ -40,7 +40,10 @@ QString conditionText(BenchState::Condition condition)
 } // namespace
 
 BottomLine::BottomLine(QWidget* parent)
-    : QWidget(parent), m_state(new QLabel(this)), m_lost(new QLabel(this)), m_notice(new QLabel(this))
+    : QWidget(parent)
+    , m_state(new QLabel(this))
+    , m_lost(new QLabel(this))
+    , m_notice(new QLabel(this))
 {
     setObjectName(u"bottomLine"_s);
     setAccessibleName(tr("State of the bench"));
@@ -81,9 +84,11 @@ void BottomLine::compose()
 {
     QStringList parts{m_bench.source.label, conditionText(m_bench.condition)};
     if (m_bench.rateHz > 0.0) {
-        parts << rateText(m_bench.rateHz) << tr("channel %1 of %2").arg(m_bench.channel).arg(std::max(1, m_bench.channels));
+        parts << rateText(m_bench.rateHz)
+              << tr("channel %1 of %2").arg(m_bench.channel).arg(std::max(1, m_bench.channels));
     }
-    parts << (m_bench.sessionFile.isEmpty() ? tr("no session is being stored") : m_bench.sessionFile);
+    parts << (m_bench.sessionFile.isEmpty() ? tr("no session is being stored")
+                                            : m_bench.sessionFile);
     parts.removeAll(QString());
     const QString separator = u"   ·   "_s;
     m_state->setText(parts.join(separator) + separator);

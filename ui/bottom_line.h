@@ -1,16 +1,17 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "ui/bench_state.h"
+
 #include <QLabel>
 #include <QTimer>
 #include <QWidget>
 
-#include "ui/bench_state.h"
-
 namespace sinewright::ui {
 
 /// Source, rate, samples lost, session file; at the right a notice that stays for ten seconds.
-class BottomLine final : public QWidget {
+class BottomLine final : public QWidget
+{
     Q_OBJECT
 public:
     explicit BottomLine(QWidget* parent = nullptr);

@@ -23,7 +23,8 @@ void ChoiceBox::paintEvent(QPaintEvent* event)
     painter.setRenderHint(QPainter::Antialiasing);
     painter.setPen(QPen(palette().color(QPalette::PlaceholderText), 1.4));
     const QPointF tip(width() - kFromRight, height() / 2.0 + kHalfWidth / 2.0);
-    painter.drawPolyline(QPolygonF({tip + QPointF(-kHalfWidth, -kHalfWidth), tip, tip + QPointF(kHalfWidth, -kHalfWidth)}));
+    painter.drawPolyline(QPolygonF(
+        {tip + QPointF(-kHalfWidth, -kHalfWidth), tip, tip + QPointF(kHalfWidth, -kHalfWidth)}));
 }
 
 } // namespace sinewright::ui

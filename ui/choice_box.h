@@ -6,7 +6,8 @@
 namespace sinewright::ui {
 
 /// A choice box set as a line of text with a small hook that says it opens; it says so before it does.
-class ChoiceBox final : public QComboBox {
+class ChoiceBox final : public QComboBox
+{
     Q_OBJECT
 public:
     using QComboBox::QComboBox;

@@ -1,10 +1,10 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/cycle_model.h"
 
+#include "ui/range_choice.h"
+
 #include <algorithm>
 #include <cmath>
-
-#include "ui/range_choice.h"
 
 namespace sinewright::ui {
 
@@ -16,9 +16,7 @@ constexpr double kLeastEndPercent = 1e-5;
 
 } // namespace
 
-CycleModel::CycleModel(QObject* parent) : QObject(parent)
-{
-}
+CycleModel::CycleModel(QObject* parent) : QObject(parent) {}
 
 void CycleModel::setFrame(std::shared_ptr<const core::Frame> frame)
 {

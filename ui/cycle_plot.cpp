@@ -17,7 +17,9 @@ constexpr double kCycleEnd = 1.15; ///< the averaged cycle keeps a little clear 
 } // namespace
 
 CyclePlot::CyclePlot(QWidget* parent)
-    : Plot(u"residual"_s, tr("Cycle residual"), u"%"_s, parent), m_cycle(nullptr), m_residual(nullptr)
+    : Plot(u"residual"_s, tr("Cycle residual"), u"%"_s, parent)
+    , m_cycle(nullptr)
+    , m_residual(nullptr)
 {
     setSideMargins(40, 16);
     xAxis->setRange(0.0, kTurnDeg);
@@ -51,7 +53,8 @@ void CyclePlot::present()
     yAxis->setRange(-m_model.residualEnd(), m_model.residualEnd());
     setNote(m_model.isEmpty() ? tr("No tone, no cycle to look at.") : QString());
     if (!m_model.isEmpty()) {
-        describe(tr("Cycle residual over one cycle, on an axis of plus and minus %1 percent of the fundamental.")
+        describe(tr("Cycle residual over one cycle, on an axis of plus and minus %1 percent of the "
+                    "fundamental.")
                      .arg(m_model.residualEnd()));
     }
 }

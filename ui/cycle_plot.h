@@ -7,7 +7,8 @@
 namespace sinewright::ui {
 
 /// What is left over one cycle once the fundamental is taken out; the averaged cycle stands faint behind it.
-class CyclePlot final : public Plot {
+class CyclePlot final : public Plot
+{
     Q_OBJECT
 public:
     explicit CyclePlot(QWidget* parent = nullptr);

@@ -1,13 +1,13 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/figure_text.h"
 
+#include "core/units.h"
+
 #include <QCoreApplication>
 #include <QLocale>
 
 #include <algorithm>
 #include <cmath>
-
-#include "core/units.h"
 
 namespace sinewright::ui {
 
@@ -20,7 +20,8 @@ constexpr QChar kNoBreakSpace{0x00A0};
 constexpr QChar kMinus{0x2212};
 constexpr double kPercent = 100.0;
 
-struct Words {
+struct Words
+{
     Q_DECLARE_TR_FUNCTIONS(sinewright::ui::FigureText)
 };
 
@@ -45,9 +46,8 @@ QString numberText(double value, int decimals)
     QLocale locale;
     locale.setNumberOptions(QLocale::OmitGroupSeparator);
     QString text = locale.toString(std::abs(value), 'f', decimals);
-    const bool isZero = std::none_of(text.cbegin(), text.cend(), [](QChar c) {
-        return c.isDigit() && c.digitValue() != 0;
-    });
+    const bool isZero = std::none_of(
+        text.cbegin(), text.cend(), [](QChar c) { return c.isDigit() && c.digitValue() != 0; });
     return value < 0.0 && !isZero ? kMinus + text : text;
 }
 
@@ -84,7 +84,8 @@ FigureText frequencyFigure(std::optional<double> hz, std::optional<double> stdHz
     }
     int decimals = decimalsFor(*hz, 3);
     if (stdHz && *stdHz > 0.0) {
-        decimals = std::clamp(-static_cast<int>(std::floor(std::log10(*stdHz))), 0, kFinestDecimals);
+        decimals =
+            std::clamp(-static_cast<int>(std::floor(std::log10(*stdHz))), 0, kFinestDecimals);
     }
     return {numberText(*hz, decimals), u"Hz"_s};
 }
@@ -127,7 +128,8 @@ QString rateText(double hz)
     constexpr double kKilo = 1000.0;
     const double kilo = hz / kKilo;
     int decimals = 0;
-    while (decimals < 3 && std::abs(kilo * std::pow(10.0, decimals) - std::round(kilo * std::pow(10.0, decimals))) > 1e-6) {
+    while (decimals < 3 && std::abs(kilo * std::pow(10.0, decimals) -
+                                    std::round(kilo * std::pow(10.0, decimals))) > 1e-6) {
         ++decimals;
     }
     return numberText(kilo, decimals) + kNoBreakSpace + u"kHz"_s;

@@ -1,16 +1,17 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <optional>
+#include "core/measure/reading.h"
 
 #include <QString>
 
-#include "core/measure/reading.h"
+#include <optional>
 
 namespace sinewright::ui {
 
 /// A figure as it is set: the digits, and apart from them the unit. An absent figure is a dash with its unit.
-struct FigureText {
+struct FigureText
+{
     QString value;
     QString unit;
     friend bool operator==(const FigureText&, const FigureText&) = default;
@@ -30,9 +31,11 @@ inline constexpr int kQuickDigits = 2;
 [[nodiscard]] FigureText percentFigure(std::optional<double> ratio, int significant = kFullDigits);
 
 /// A ratio as decibels. Ratio 0 counts as absent: minus infinity is no figure.
-[[nodiscard]] FigureText ratioDecibelFigure(std::optional<double> ratio, int decimals, const QString& unit);
+[[nodiscard]] FigureText
+ratioDecibelFigure(std::optional<double> ratio, int decimals, const QString& unit);
 
-[[nodiscard]] FigureText decibelFigure(std::optional<double> decibels, int decimals, const QString& unit);
+[[nodiscard]] FigureText
+decibelFigure(std::optional<double> decibels, int decimals, const QString& unit);
 
 /// Hertz, cut after the digit that one standard deviation reaches; three decimals at most, and three significant
 /// digits when no deviation is known.

@@ -1,13 +1,13 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/figures_column.h"
 
+#include "ui/advice.h"
+#include "ui/reading_choice.h"
+
 #include <QPainter>
 
 #include <algorithm>
 #include <cmath>
-
-#include "ui/advice.h"
-#include "ui/reading_choice.h"
 
 namespace sinewright::ui {
 
@@ -38,11 +38,14 @@ QString underText(std::optional<double> ratio)
 
 } // namespace
 
-FiguresColumn::FiguresColumn(QWidget* parent) : QWidget(parent), m_theme(&ui::theme(ThemeName::Paper))
+FiguresColumn::FiguresColumn(QWidget* parent)
+    : QWidget(parent)
+    , m_theme(&ui::theme(ThemeName::Paper))
 {
     setObjectName(u"figures"_s);
     setAccessibleName(tr("Running figures"));
-    setToolTip(tr("The running figures. Steady tone: from full readings; while it moves: from quick ones."));
+    setToolTip(tr(
+        "The running figures. Steady tone: from full readings; while it moves: from quick ones."));
     setSizePolicy(QSizePolicy::Fixed, QSizePolicy::Expanding);
     rebuild();
 }
@@ -85,32 +88,55 @@ void FiguresColumn::rebuild()
     const ShownReading shown = m_frame ? shownReading(*m_frame) : ShownReading{&kNothing, false};
     const core::Reading& reading = *shown.reading;
     const int digits = shown.isFull ? kFullDigits : kQuickDigits;
-    const QString kind = !m_frame ? QString() : m_isStale ? tr("last reading") : shown.isFull ? tr("full reading") : tr("quick reading");
+    const QString kind = !m_frame       ? QString()
+                         : m_isStale    ? tr("last reading")
+                         : shown.isFull ? tr("full reading")
+                                        : tr("quick reading");
 
-    FigureText level = reading.levelVrms ? voltFigure(reading.levelVrms) : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s);
-    const QString levelUnder = reading.levelVrms ? joined(decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)) : QString();
-    const core::BestReading* best = m_frame && m_frame->trend && m_frame->trend->best ? &*m_frame->trend->best : nullptr;
+    FigureText level = reading.levelVrms ? voltFigure(reading.levelVrms)
+                                         : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s);
+    const QString levelUnder =
+        reading.levelVrms ? joined(decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)) : QString();
+    const core::BestReading* best =
+        m_frame && m_frame->trend && m_frame->trend->best ? &*m_frame->trend->best : nullptr;
     QString bestUnder;
     std::optional<double> bestThd;
     if (best != nullptr) {
         bestThd = best->thdRatio;
-        bestUnder = tr("%1, at %2")
-                        .arg(ageText(m_frame->timeS - best->timeS),
-                             joined(best->levelVrms ? voltFigure(best->levelVrms)
-                                                    : decibelFigure(best->levelDbfs, 2, u"dBFS"_s)));
+        bestUnder =
+            tr("%1, at %2")
+                .arg(ageText(m_frame->timeS - best->timeS),
+                     joined(best->levelVrms ? voltFigure(best->levelVrms)
+                                            : decibelFigure(best->levelDbfs, 2, u"dBFS"_s)));
     }
     m_blocks = {
-        {tr("THD"), kind, percentFigure(reading.thdRatio, digits), underText(reading.thdRatio), false},
-        {tr("THD+N"), {}, percentFigure(reading.thdnRatio, digits), underText(reading.thdnRatio), false},
-        {tr("Frequency"), {}, frequencyFigure(reading.frequencyHz, reading.frequencyStdHz), {}, false},
+        {tr("THD"),
+         kind,
+         percentFigure(reading.thdRatio, digits),
+         underText(reading.thdRatio),
+         false},
+        {tr("THD+N"),
+         {},
+         percentFigure(reading.thdnRatio, digits),
+         underText(reading.thdnRatio),
+         false},
+        {tr("Frequency"),
+         {},
+         frequencyFigure(reading.frequencyHz, reading.frequencyStdHz),
+         {},
+         false},
         {tr("Level"), {}, level, levelUnder, false},
         {tr("Best so far"), {}, percentFigure(bestThd), bestUnder, true},
     };
+    FigureText hum = decibelFigure(reading.mainsHumDbc, 1, u"dBc"_s);
+    if (!reading.mainsHumDbc && reading.status == core::ReadingStatus::Ok) {
+        hum = {tr("none seen"), {}}; // looked for and not found, unlike a figure that cannot be had
+    }
     m_lines = {
         {tr("SINAD"), decibelFigure(reading.sinadDb, 1, u"dB"_s)},
         {tr("SNR"), decibelFigure(reading.snrDb, 1, u"dB"_s)},
         {tr("noise"), decibelFigure(reading.noiseDbfs, 1, u"dBFS"_s)},
-        {tr("mains hum"), decibelFigure(reading.mainsHumDbc, 1, u"dBc"_s)},
+        {tr("mains hum"), hum},
     };
     QStringList remarks;
     for (const core::Warning warning : reading.warnings) {
@@ -118,13 +144,16 @@ void FiguresColumn::rebuild()
     }
     m_remarks = remarks.join(u", "_s);
     setAccessibleDescription(tr("THD %1, THD+N %2, frequency %3, level %4.")
-                                 .arg(joined(m_blocks[0].figure), joined(m_blocks[1].figure),
-                                      joined(m_blocks[2].figure), joined(m_blocks[3].figure)));
+                                 .arg(joined(m_blocks[0].figure),
+                                      joined(m_blocks[1].figure),
+                                      joined(m_blocks[2].figure),
+                                      joined(m_blocks[3].figure)));
 }
 
 int FiguresColumn::px(double pixels) const
 {
-    return static_cast<int>(std::lround(pixels * std::clamp(height() / kPlainHeight, 1.0, kLargestScale)));
+    return static_cast<int>(
+        std::lround(pixels * std::clamp(height() / kPlainHeight, 1.0, kLargestScale)));
 }
 
 void FiguresColumn::resizeEvent(QResizeEvent* event)
@@ -138,13 +167,18 @@ void FiguresColumn::paintEvent(QPaintEvent* /*event*/)
     QPainter painter(this);
     double used = px(kLineHeight) * (static_cast<double>(m_lines.size()) + 1.5);
     for (std::size_t i = 0; i < m_blocks.size(); ++i) {
-        used += px(i == 0 ? kThdBlockHeight : m_blocks[i].under.isEmpty() ? kPlainBlockHeight : kBlockHeight);
+        used += px(i == 0                        ? kThdBlockHeight
+                   : m_blocks[i].under.isEmpty() ? kPlainBlockHeight
+                                                 : kBlockHeight);
     }
     const double gaps = 2.0 * static_cast<double>(m_blocks.size()) + 1.0;
-    const double gap = std::clamp((height() - used) / gaps, 3.0, static_cast<double>(px(kLargestGap)));
+    const double gap =
+        std::clamp((height() - used) / gaps, 3.0, static_cast<double>(px(kLargestGap)));
     double y = 0.0;
     for (const Block& block : m_blocks) {
-        y = paintBlock(painter, block, y, px(&block == m_blocks.data() ? kThdPixels : kFigurePixels)) + gap;
+        y = paintBlock(
+                painter, block, y, px(&block == m_blocks.data() ? kThdPixels : kFigurePixels)) +
+            gap;
         paintRule(painter, y);
         y += gap;
     }
@@ -157,11 +191,14 @@ void FiguresColumn::paintEvent(QPaintEvent* /*event*/)
         font.setItalic(true);
         painter.setFont(font);
         painter.setPen(m_theme->ink);
-        painter.drawText(QRectF(0.0, y + gap / 2.0, width(), height() - y), Qt::AlignLeft | Qt::TextWordWrap, m_remarks);
+        painter.drawText(QRectF(0.0, y + gap / 2.0, width(), height() - y),
+                         Qt::AlignLeft | Qt::TextWordWrap,
+                         m_remarks);
     }
 }
 
-double FiguresColumn::paintBlock(QPainter& painter, const Block& block, double y, int figurePixels) const
+double
+FiguresColumn::paintBlock(QPainter& painter, const Block& block, double y, int figurePixels) const
 {
     const double labelBaseline = y + px(kLabelBaseline);
     painter.setFont(labelFont(px(kLabelPixels)));
@@ -174,17 +211,18 @@ double FiguresColumn::paintBlock(QPainter& painter, const Block& block, double y
     }
     painter.setFont(displayFont(figurePixels));
     const bool isAbsent = block.figure.value == kAbsent;
-    painter.setPen(isAbsent                       ? m_theme->inkSoft
-                   : block.isBest                 ? m_theme->verdigris
+    painter.setPen(isAbsent                                  ? m_theme->inkSoft
+                   : block.isBest                            ? m_theme->verdigris
                    : &block == m_blocks.data() && !m_isStale ? m_theme->copper
-                                                  : m_theme->ink);
+                                                             : m_theme->ink);
     const QFontMetricsF metrics(painter.font());
     const double baseline = std::round(labelBaseline + px(kLabelGap) + metrics.capHeight());
     painter.drawText(QPointF(-1.0, baseline), block.figure.value);
     painter.setFont(figureFont(std::max(px(kUnderPixels + 1), figurePixels / 2)));
     painter.setPen(m_theme->inkSoft);
     if (!isAbsent) {
-        painter.drawText(QPointF(metrics.horizontalAdvance(block.figure.value) + px(5.0), baseline), block.figure.unit);
+        painter.drawText(QPointF(metrics.horizontalAdvance(block.figure.value) + px(5.0), baseline),
+                         block.figure.unit);
     }
     if (block.under.isEmpty()) {
         return baseline + 2.0;
@@ -200,13 +238,16 @@ void FiguresColumn::paintLine(QPainter& painter, const Line& line, double baseli
     painter.setPen(m_theme->inkSoft);
     painter.drawText(QPointF(0.0, baseline), line.label);
     const QFontMetricsF metrics(painter.font());
-    const double unitWidth = metrics.horizontalAdvance(u"dBFS"_s);
+    const bool isWord = line.figure.unit.isEmpty();
+    const double unitWidth = isWord ? -px(5.0) : metrics.horizontalAdvance(u"dBFS"_s);
     if (line.figure.value != kAbsent) {
         painter.drawText(QPointF(width() - unitWidth, baseline), line.figure.unit);
     }
     painter.setPen(m_theme->ink);
-    painter.drawText(QPointF(width() - unitWidth - px(5.0) - metrics.horizontalAdvance(line.figure.value), baseline),
-                     line.figure.value);
+    painter.drawText(
+        QPointF(width() - unitWidth - px(5.0) - metrics.horizontalAdvance(line.figure.value),
+                baseline),
+        line.figure.value);
 }
 
 void FiguresColumn::paintRule(QPainter& painter, double y) const

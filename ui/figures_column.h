@@ -1,24 +1,26 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <memory>
-#include <vector>
-
-#include <QElapsedTimer>
-#include <QWidget>
-
 #include "core/measure/frame.h"
 #include "ui/figure_text.h"
 #include "ui/theme.h"
 
+#include <QElapsedTimer>
+#include <QWidget>
+
+#include <memory>
+#include <vector>
+
 namespace sinewright::ui {
 
 /// The narrow column of running figures: what the eye goes to between two turns of the trimmer.
-class FiguresColumn final : public QWidget {
+class FiguresColumn final : public QWidget
+{
     Q_OBJECT
 public:
     /// A large figure with its label and what stands small beside and under it.
-    struct Block {
+    struct Block
+    {
         QString label;
         QString remark; ///< at the right of the label
         FigureText figure;
@@ -26,7 +28,8 @@ public:
         bool isBest = false;
     };
     /// A small figure on a line of its own.
-    struct Line {
+    struct Line
+    {
         QString label;
         FigureText figure;
     };
@@ -48,7 +51,8 @@ protected:
 
 private:
     void rebuild();
-    [[nodiscard]] double paintBlock(QPainter& painter, const Block& block, double y, int figurePixels) const;
+    [[nodiscard]] double
+    paintBlock(QPainter& painter, const Block& block, double y, int figurePixels) const;
     void paintLine(QPainter& painter, const Line& line, double baseline) const;
     void paintRule(QPainter& painter, double y) const;
 

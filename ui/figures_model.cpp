@@ -1,10 +1,10 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/figures_model.h"
 
-#include <QCoreApplication>
-
 #include "ui/advice.h"
 #include "ui/reading_choice.h"
+
+#include <QCoreApplication>
 
 namespace sinewright::ui {
 
@@ -14,27 +14,36 @@ namespace {
 
 void addPurity(std::vector<FigureRow>& rows, const core::Reading& reading, int digits)
 {
-    rows.push_back({FiguresModel::tr("THD"), percentFigure(reading.thdRatio, digits),
+    rows.push_back({FiguresModel::tr("THD"),
+                    percentFigure(reading.thdRatio, digits),
                     joined(ratioDecibelFigure(reading.thdRatio, 1, u"dB"_s))});
-    rows.push_back({FiguresModel::tr("THD over the total"), percentFigure(reading.thdRRatio, digits), {}});
-    rows.push_back({FiguresModel::tr("THD+N"), percentFigure(reading.thdnRatio, digits),
+    rows.push_back(
+        {FiguresModel::tr("THD over the total"), percentFigure(reading.thdRRatio, digits), {}});
+    rows.push_back({FiguresModel::tr("THD+N"),
+                    percentFigure(reading.thdnRatio, digits),
                     joined(ratioDecibelFigure(reading.thdnRatio, 1, u"dB"_s))});
     rows.push_back({FiguresModel::tr("SINAD"), decibelFigure(reading.sinadDb, 1, u"dB"_s), {}});
     rows.push_back({FiguresModel::tr("SNR"), decibelFigure(reading.snrDb, 1, u"dB"_s), {}});
     rows.push_back({FiguresModel::tr("noise"), decibelFigure(reading.noiseDbfs, 1, u"dBFS"_s), {}});
-    rows.push_back({FiguresModel::tr("mains hum"), decibelFigure(reading.mainsHumDbc, 1, u"dBc"_s), {}});
+    rows.push_back(
+        {FiguresModel::tr("mains hum"), decibelFigure(reading.mainsHumDbc, 1, u"dBc"_s), {}});
 }
 
 void addTone(std::vector<FigureRow>& rows, const core::Reading& reading)
 {
     QString sigma;
     if (reading.frequencyStdHz) {
-        sigma = FiguresModel::tr("standard deviation %1 Hz").arg(*reading.frequencyStdHz, 0, 'g', 2);
+        sigma =
+            FiguresModel::tr("standard deviation %1 Hz").arg(*reading.frequencyStdHz, 0, 'g', 2);
     }
-    rows.push_back({FiguresModel::tr("frequency"), frequencyFigure(reading.frequencyHz, reading.frequencyStdHz), sigma});
+    rows.push_back({FiguresModel::tr("frequency"),
+                    frequencyFigure(reading.frequencyHz, reading.frequencyStdHz),
+                    sigma});
     rows.push_back({FiguresModel::tr("level"), decibelFigure(reading.levelDbfs, 2, u"dBFS"_s), {}});
-    rows.push_back({FiguresModel::tr("level in volts rms"), voltFigure(reading.levelVrms),
-                    reading.levelVrms ? QString() : FiguresModel::tr("needs the full scale, see Hook-up")});
+    rows.push_back(
+        {FiguresModel::tr("level in volts rms"),
+         voltFigure(reading.levelVrms),
+         reading.levelVrms ? QString() : FiguresModel::tr("needs the full scale, see Hook-up")});
     rows.push_back({FiguresModel::tr("DC, of full scale"), percentFigure(reading.dcFs, 2), {}});
 }
 
@@ -42,12 +51,14 @@ void addHarmonics(std::vector<FigureRow>& rows, const core::Reading& reading, in
 {
     for (const core::HarmonicReading& harmonic : reading.harmonics) {
         QString note = FiguresModel::tr("%1, phase %2")
-                           .arg(joined(percentFigure(harmonic.ratio, digits)), joined(degreeFigure(harmonic.phaseDeg)));
+                           .arg(joined(percentFigure(harmonic.ratio, digits)),
+                                joined(degreeFigure(harmonic.phaseDeg)));
         if (!harmonic.inBand) {
             note = FiguresModel::tr("%1, above the band").arg(note);
         }
         rows.push_back({FiguresModel::tr("harmonic %1").arg(harmonic.order),
-                        ratioDecibelFigure(harmonic.ratio, 1, u"dBc"_s), note});
+                        ratioDecibelFigure(harmonic.ratio, 1, u"dBc"_s),
+                        note});
     }
 }
 
@@ -69,16 +80,15 @@ std::vector<FigureRow> figureRows(const core::Frame* frame)
     addPurity(rows, *shown.reading, digits);
     addTone(rows, *shown.reading);
     if (frame->trend && frame->trend->best) {
-        rows.push_back({FiguresModel::tr("best THD so far"), percentFigure(frame->trend->best->thdRatio),
+        rows.push_back({FiguresModel::tr("best THD so far"),
+                        percentFigure(frame->trend->best->thdRatio),
                         ageText(frame->timeS - frame->trend->best->timeS)});
     }
     addHarmonics(rows, *shown.reading, digits);
     return rows;
 }
 
-FiguresModel::FiguresModel(QObject* parent) : QAbstractTableModel(parent)
-{
-}
+FiguresModel::FiguresModel(QObject* parent) : QAbstractTableModel(parent) {}
 
 void FiguresModel::setFrame(const core::Frame* frame)
 {
@@ -92,7 +102,8 @@ void FiguresModel::setFrame(const core::Frame* frame)
     for (std::size_t i = 0; i < rows.size(); ++i) {
         if (!(rows[i] == m_rows[i])) {
             m_rows[i] = rows[i];
-            emit dataChanged(index(static_cast<int>(i), 0), index(static_cast<int>(i), ColumnCount - 1));
+            emit dataChanged(index(static_cast<int>(i), 0),
+                             index(static_cast<int>(i), ColumnCount - 1));
         }
     }
 }

@@ -12,7 +12,8 @@ class QVBoxLayout;
 namespace sinewright::ui {
 
 /// Hook-up: the cautions, how to set the level, and what is measured, full-scale calibration included.
-class HookUpPage final : public BenchPage {
+class HookUpPage final : public BenchPage
+{
     Q_OBJECT
 public:
     explicit HookUpPage(QWidget* parent = nullptr);

@@ -1,11 +1,11 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/keys_dialog.h"
 
-#include <QGridLayout>
-#include <QLabel>
-
 #include "ui/prose.h"
 #include "ui/theme.h"
+
+#include <QGridLayout>
+#include <QLabel>
 
 namespace sinewright::ui {
 

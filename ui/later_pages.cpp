@@ -1,15 +1,15 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/later_pages.h"
 
+#include "ui/figure_text.h"
+#include "ui/prose.h"
+#include "ui/reading_choice.h"
+
 #include <QButtonGroup>
 #include <QGridLayout>
 #include <QLabel>
 #include <QPushButton>
 #include <QRadioButton>
-
-#include "ui/figure_text.h"
-#include "ui/prose.h"
-#include "ui/reading_choice.h"
 
 namespace sinewright::ui {
 
@@ -38,10 +38,11 @@ WarmUpPage::WarmUpPage(QWidget* parent)
     setAccessibleName(tr("Warm-up"));
     QVBoxLayout* column = scrollingSheet(this);
     column->addWidget(titleLabel(tr("How it settles and how well it stays"), this));
-    column->addWidget(paragraphLabel(tr("This page will log frequency, level and distortion for minutes to days, say when the "
-                                        "oscillator is ready, and how stable it is. The log is not built yet; the running "
-                                        "figures below are live."),
-                                     this));
+    column->addWidget(paragraphLabel(
+        tr("This page will log frequency, level and distortion for minutes to days, say when the "
+           "oscillator is ready, and how stable it is. The log is not built yet; the running "
+           "figures below are live."),
+        this));
     column->addSpacing(12);
     auto* grid = new QGridLayout;
     grid->setVerticalSpacing(0);
@@ -74,13 +75,17 @@ void WarmUpPage::showFrame(const std::shared_ptr<const core::Frame>& frame)
     m_sinceShown.start();
     const ShownReading shown = frame ? shownReading(*frame) : ShownReading{};
     const core::Reading reading = shown.reading ? *shown.reading : core::Reading();
-    setTextIfNew(*m_frequency, joined(frequencyFigure(reading.frequencyHz, reading.frequencyStdHz)));
-    setTextIfNew(*m_deviation, reading.frequencyStdHz
-                                   ? tr("one standard deviation: %1 mHz").arg(numberText(*reading.frequencyStdHz * 1000.0, 2))
-                                   : QString());
-    setTextIfNew(*m_level, joined(reading.levelVrms ? voltFigure(reading.levelVrms)
-                                                    : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)));
-    setTextIfNew(*m_thd, joined(percentFigure(reading.thdRatio, shown.isFull ? kFullDigits : kQuickDigits)));
+    setTextIfNew(*m_frequency,
+                 joined(frequencyFigure(reading.frequencyHz, reading.frequencyStdHz)));
+    setTextIfNew(*m_deviation,
+                 reading.frequencyStdHz ? tr("one standard deviation: %1 mHz")
+                                              .arg(numberText(*reading.frequencyStdHz * 1000.0, 2))
+                                        : QString());
+    setTextIfNew(*m_level,
+                 joined(reading.levelVrms ? voltFigure(reading.levelVrms)
+                                          : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)));
+    setTextIfNew(
+        *m_thd, joined(percentFigure(reading.thdRatio, shown.isFull ? kFullDigits : kQuickDigits)));
 }
 
 NetworkPage::NetworkPage(QWidget* parent) : BenchPage(parent)
@@ -88,16 +93,19 @@ NetworkPage::NetworkPage(QWidget* parent) : BenchPage(parent)
     setAccessibleName(tr("Network"));
     QVBoxLayout* column = scrollingSheet(this);
     column->addWidget(titleLabel(tr("Does the network do what its parts promise"), this));
-    column->addWidget(paragraphLabel(tr("This page will play a sweep through the RC network and compare its transfer function "
-                                        "with the one that the part values give: where its centre lies, how deep the notch is "
-                                        "or how high the peak, and which part is off."),
-                                     this));
-    column->addWidget(paragraphLabel(tr("It will also take you along the dial, range by range, and show how purity and level "
-                                        "hold over the tuning range."),
-                                     this));
-    column->addWidget(paragraphLabel(tr("None of this is built yet. Until then, turn the dial by hand and watch frequency, "
-                                        "level and THD on the Trim page."),
-                                     this));
+    column->addWidget(paragraphLabel(
+        tr("This page will play a sweep through the RC network and compare its transfer function "
+           "with the one that the part values give: where its centre lies, how deep the notch is "
+           "or how high the peak, and which part is off."),
+        this));
+    column->addWidget(paragraphLabel(
+        tr("It will also take you along the dial, range by range, and show how purity and level "
+           "hold over the tuning range."),
+        this));
+    column->addWidget(paragraphLabel(
+        tr("None of this is built yet. Until then, turn the dial by hand and watch frequency, "
+           "level and THD on the Trim page."),
+        this));
     column->addStretch(1);
 }
 
@@ -106,15 +114,17 @@ RecordPage::RecordPage(QWidget* parent) : BenchPage(parent), m_scale(new QButton
     setAccessibleName(tr("Record"));
     QVBoxLayout* column = scrollingSheet(this);
     column->addWidget(titleLabel(tr("A record that others can trust"), this));
-    column->addWidget(paragraphLabel(tr("This page will gather what was measured into a test record: figures with their "
-                                        "uncertainties, settings, plots, and the takes to measure again. The record is not "
-                                        "built yet; pictures can be saved now."),
-                                     this));
+    column->addWidget(paragraphLabel(
+        tr("This page will gather what was measured into a test record: figures with their "
+           "uncertainties, settings, plots, and the takes to measure again. The record is not "
+           "built yet; pictures can be saved now."),
+        this));
     column->addWidget(hairRule(this));
     column->addWidget(headingLabel(tr("Pictures"), this));
-    column->addWidget(paragraphLabel(tr("A picture carries a caption with time, source, rate, settings and figures. On any page "
-                                        "one key saves the page, another the plot under the pointer: F1 lists them."),
-                                     this));
+    column->addWidget(paragraphLabel(
+        tr("A picture carries a caption with time, source, rate, settings and figures. On any page "
+           "one key saves the page, another the plot under the pointer: F1 lists them."),
+        this));
     auto* row = new QHBoxLayout;
     row->setSpacing(20);
     auto* save = new QPushButton(tr("Save a picture of the Trim page"), this);
@@ -122,7 +132,8 @@ RecordPage::RecordPage(QWidget* parent) : BenchPage(parent), m_scale(new QButton
     save->setToolTip(tr("Saves the Trim page as it stands now, as a PNG."));
     connect(save, &QPushButton::clicked, this, &RecordPage::pictureOfTrimWanted);
     row->addWidget(save);
-    const std::pair<int, QString> sizes[] = {{1, tr("as on the screen")}, {2, tr("twice as fine, for print")}};
+    const std::pair<int, QString> sizes[] = {{1, tr("as on the screen")},
+                                             {2, tr("twice as fine, for print")}};
     for (const auto& [scale, text] : sizes) {
         auto* choice = new QRadioButton(text, this);
         choice->setToolTip(tr("Pixels of the picture over pixels of the window: %1").arg(scale));

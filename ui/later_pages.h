@@ -1,9 +1,9 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <QElapsedTimer>
-
 #include "ui/bench_page.h"
+
+#include <QElapsedTimer>
 
 class QButtonGroup;
 class QLabel;
@@ -11,7 +11,8 @@ class QLabel;
 namespace sinewright::ui {
 
 /// Warm-up: what it will do, and the running frequency and level that can be read now.
-class WarmUpPage final : public BenchPage {
+class WarmUpPage final : public BenchPage
+{
     Q_OBJECT
 public:
     explicit WarmUpPage(QWidget* parent = nullptr);
@@ -26,14 +27,16 @@ private:
 };
 
 /// Network: what it will do.
-class NetworkPage final : public BenchPage {
+class NetworkPage final : public BenchPage
+{
     Q_OBJECT
 public:
     explicit NetworkPage(QWidget* parent = nullptr);
 };
 
 /// Record: what it will do, and pictures, which can be saved now.
-class RecordPage final : public BenchPage {
+class RecordPage final : public BenchPage
+{
     Q_OBJECT
 public:
     explicit RecordPage(QWidget* parent = nullptr);

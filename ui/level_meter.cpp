@@ -1,13 +1,13 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/level_meter.h"
 
+#include "core/units.h"
+#include "ui/figure_text.h"
+
 #include <QPainter>
 
 #include <algorithm>
 #include <cmath>
-
-#include "core/units.h"
-#include "ui/figure_text.h"
 
 namespace sinewright::ui {
 
@@ -34,8 +34,10 @@ std::optional<double> decibels(double value)
 void MeterModel::feed(double peakFs, double rmsFs, bool isOverloaded, qint64 nowMs)
 {
     const auto peak = decibels(peakFs);
-    const std::optional<double> peakDbfs = peak ? std::optional(core::decibelsFromRatio(*peak)) : std::nullopt;
-    if (!m_peakDbfs || (peakDbfs && *peakDbfs >= *m_peakDbfs) || nowMs - m_peakAtMs >= kHoldPeakMs) {
+    const std::optional<double> peakDbfs =
+        peak ? std::optional(core::decibelsFromRatio(*peak)) : std::nullopt;
+    if (!m_peakDbfs || (peakDbfs && *peakDbfs >= *m_peakDbfs) ||
+        nowMs - m_peakAtMs >= kHoldPeakMs) {
         m_peakDbfs = peakDbfs;
         m_peakAtMs = nowMs;
     }
@@ -58,7 +60,8 @@ LevelMeter::LevelMeter(QWidget* parent) : QWidget(parent), m_theme(&ui::theme(Th
 {
     setObjectName(u"levelMeter"_s);
     setAccessibleName(tr("Input level"));
-    setToolTip(tr("Input level in dBFS: the bar is the rms, the tick the peak. Aim for peaks 3 to 12 dB below full scale."));
+    setToolTip(tr("Input level in dBFS: the bar is the rms, the tick the peak. Aim for peaks 3 to "
+                  "12 dB below full scale."));
     setSizePolicy(QSizePolicy::Expanding, QSizePolicy::Fixed);
     clear();
 }
@@ -87,8 +90,9 @@ void LevelMeter::feed(double peakFs, double rmsFs, bool isOverloaded, qint64 now
         m_shownAtMs = nowMs;
         m_peakText = joined(decibelFigure(m_model.peakDbfs(), 1, u"dBFS"_s));
         m_rmsText = joined(decibelFigure(m_model.rmsDbfs(), 1, u"dBFS"_s));
-        setAccessibleDescription(m_model.isOver() ? tr("Overload. Peak %1, rms %2.").arg(m_peakText, m_rmsText)
-                                                  : tr("Peak %1, rms %2.").arg(m_peakText, m_rmsText));
+        setAccessibleDescription(m_model.isOver()
+                                     ? tr("Overload. Peak %1, rms %2.").arg(m_peakText, m_rmsText)
+                                     : tr("Peak %1, rms %2.").arg(m_peakText, m_rmsText));
     }
     update();
 }
@@ -113,11 +117,13 @@ void LevelMeter::paintEvent(QPaintEvent* /*event*/)
 void LevelMeter::paintScale(QPainter& painter, const QRectF& bar) const
 {
     const auto at = [&bar](double dbfs) {
-        return bar.left() + bar.width() * (std::clamp(dbfs, kBottomDbfs, 0.0) - kBottomDbfs) / -kBottomDbfs;
+        return bar.left() +
+               bar.width() * (std::clamp(dbfs, kBottomDbfs, 0.0) - kBottomDbfs) / -kBottomDbfs;
     };
     if (m_model.rmsDbfs()) {
-        painter.fillRect(QRectF(QPointF(bar.left(), bar.top()), QPointF(at(*m_model.rmsDbfs()), bar.bottom())),
-                         m_theme->slate);
+        painter.fillRect(
+            QRectF(QPointF(bar.left(), bar.top()), QPointF(at(*m_model.rmsDbfs()), bar.bottom())),
+            m_theme->slate);
     }
     painter.setPen(QPen(m_theme->hairline, 1.0));
     painter.drawLine(bar.bottomLeft() + QPointF(0.0, 1.0), bar.bottomRight() + QPointF(0.0, 1.0));
@@ -144,13 +150,14 @@ void LevelMeter::paintText(QPainter& painter, const QRectF& area) const
     painter.setFont(figureFont(kTypeSize));
     const double first = area.top() + 4.0 + kTypeSize;
     const double second = first + kTypeSize + 5.0;
-    const auto row = [&](double baseline, const QString& label, const QString& text, const QColor& colour) {
-        painter.setPen(m_theme->inkSoft);
-        painter.drawText(QPointF(area.left(), baseline), label);
-        painter.setPen(colour);
-        const double x = area.right() - QFontMetricsF(painter.font()).horizontalAdvance(text);
-        painter.drawText(QPointF(x, baseline), text);
-    };
+    const auto row =
+        [&](double baseline, const QString& label, const QString& text, const QColor& colour) {
+            painter.setPen(m_theme->inkSoft);
+            painter.drawText(QPointF(area.left(), baseline), label);
+            painter.setPen(colour);
+            const double x = area.right() - QFontMetricsF(painter.font()).horizontalAdvance(text);
+            painter.drawText(QPointF(x, baseline), text);
+        };
     if (m_model.isOver()) {
         QFont strong = painter.font();
         strong.setBold(true);

@@ -1,24 +1,28 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <optional>
+#include "ui/theme.h"
 
 #include <QWidget>
 
-#include "ui/theme.h"
+#include <optional>
 
 namespace sinewright::ui {
 
 /// What the level meter shows: peak and rms in dBFS, the highest peak of the last moments, an overload that stays
 /// to be seen.
-class MeterModel final {
+class MeterModel final
+{
 public:
     /// @param peakFs, rmsFs  since the last call, 1.0 = full scale.   @param nowMs  any steady clock.
     void feed(double peakFs, double rmsFs, bool isOverloaded, qint64 nowMs);
     void clear();
 
-    [[nodiscard]] std::optional<double> peakDbfs() const { return m_peakDbfs; } ///< held; empty: silence
-    [[nodiscard]] std::optional<double> rmsDbfs() const { return m_rmsDbfs; }   ///< AES17
+    [[nodiscard]] std::optional<double> peakDbfs() const
+    {
+        return m_peakDbfs;
+    } ///< held; empty: silence
+    [[nodiscard]] std::optional<double> rmsDbfs() const { return m_rmsDbfs; } ///< AES17
     [[nodiscard]] bool isOver() const { return m_isOver; }
 
 private:
@@ -30,7 +34,8 @@ private:
 };
 
 /// A horizontal level meter: a bar for rms, a tick for the peak, a word for an overload.
-class LevelMeter final : public QWidget {
+class LevelMeter final : public QWidget
+{
     Q_OBJECT
 public:
     explicit LevelMeter(QWidget* parent = nullptr);

@@ -1,20 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/main_window.h"
 
-#include <QCursor>
-#include <QDialog>
-#include <QElapsedTimer>
-#include <QHBoxLayout>
-#include <QHeaderView>
-#include <QScreen>
-#include <QStackedWidget>
-#include <QTableView>
-#include <QTimer>
-#include <QVBoxLayout>
-
-#include <algorithm>
-#include <array>
-
 #include "ui/actions.h"
 #include "ui/advice.h"
 #include "ui/advice_label.h"
@@ -32,6 +18,20 @@
 #include "ui/source_bar.h"
 #include "ui/trim_page.h"
 #include "ui/trimmer.h"
+
+#include <QCursor>
+#include <QDialog>
+#include <QElapsedTimer>
+#include <QHBoxLayout>
+#include <QHeaderView>
+#include <QScreen>
+#include <QStackedWidget>
+#include <QTableView>
+#include <QTimer>
+#include <QVBoxLayout>
+
+#include <algorithm>
+#include <array>
 
 namespace sinewright::ui {
 
@@ -51,7 +51,8 @@ constexpr std::array kPageWords{"hook-up", "trim", "warm-up", "network", "record
 } // namespace
 
 /// The window's parts and what holds them together.
-class MainWindow::Impl final : public QObject {
+class MainWindow::Impl final : public QObject
+{
     Q_OBJECT
 public:
     Impl(MainWindow& window, FrameFeed source);
@@ -68,8 +69,8 @@ public:
     FrameFeed m_feed;
     Actions m_actions;
     QStackedWidget* m_views;
-    QWidget* m_bench;   ///< rail, source bar, sheet and bottom line
-    QWidget* m_sheet;   ///< advice line and page
+    QWidget* m_bench; ///< rail, source bar, sheet and bottom line
+    QWidget* m_sheet; ///< advice line and page
     SourceBar* m_sources;
     AdviceLabel* m_adviceLabel;
     QStackedWidget* m_pages;
@@ -138,10 +139,13 @@ MainWindow::Impl::Impl(MainWindow& window, FrameFeed source)
 void MainWindow::Impl::build()
 {
     const Actions& a = m_actions;
-    m_rail = new Rail(QList<QAction*>(a.pages.begin(), a.pages.end()), {a.freeze, a.armsLength, a.savePage, a.dusk, a.keys},
+    m_rail = new Rail(QList<QAction*>(a.pages.begin(), a.pages.end()),
+                      {a.freeze, a.armsLength, a.savePage, a.dusk, a.keys},
                       m_bench);
-    for (QWidget* page : {static_cast<QWidget*>(m_hookUp), static_cast<QWidget*>(m_trim),
-                          static_cast<QWidget*>(new WarmUpPage(m_pages)), static_cast<QWidget*>(new NetworkPage(m_pages)),
+    for (QWidget* page : {static_cast<QWidget*>(m_hookUp),
+                          static_cast<QWidget*>(m_trim),
+                          static_cast<QWidget*>(new WarmUpPage(m_pages)),
+                          static_cast<QWidget*>(new NetworkPage(m_pages)),
                           static_cast<QWidget*>(m_record)}) {
         m_pages->addWidget(page);
     }
@@ -175,7 +179,9 @@ void MainWindow::Impl::connectActions()
     Actions& a = m_actions;
     m_window.addActions(a.all());
     for (int i = 0; i < Actions::kPages; ++i) {
-        connect(a.pages[static_cast<std::size_t>(i)], &QAction::triggered, this, [this, i] { setPage(i); });
+        connect(a.pages[static_cast<std::size_t>(i)], &QAction::triggered, this, [this, i] {
+            setPage(i);
+        });
     }
     connect(a.openTake, &QAction::triggered, m_sources, &SourceBar::openTake);
     connect(a.chooseSource, &QAction::triggered, this, [this] {
@@ -190,7 +196,9 @@ void MainWindow::Impl::connectActions()
     });
     connect(a.figureTable, &QAction::triggered, this, &Impl::showTable);
     connect(a.armsLength, &QAction::toggled, this, &Impl::setArmsLength);
-    connect(a.leaveArmsLength, &QAction::triggered, this, [this] { m_actions.armsLength->setChecked(false); });
+    connect(a.leaveArmsLength, &QAction::triggered, this, [this] {
+        m_actions.armsLength->setChecked(false);
+    });
     connect(a.dusk, &QAction::toggled, this, &Impl::setDusk);
     connect(a.savePage, &QAction::triggered, this, &Impl::savePage);
     connect(a.savePlot, &QAction::triggered, this, &Impl::savePlot);
@@ -200,7 +208,8 @@ void MainWindow::Impl::connectActions()
     });
     connect(a.keys, &QAction::triggered, this, [this] {
         QList<ActionGroup> groups = m_actions.groups();
-        groups.insert(2, {tr("Virtual trimmer, while it has the focus"), m_trim->trimmer().keyActions()});
+        groups.insert(
+            2, {tr("Virtual trimmer, while it has the focus"), m_trim->trimmer().keyActions()});
         auto* dialog = new KeysDialog(groups, &m_window);
         dialog->show();
     });
@@ -212,9 +221,13 @@ void MainWindow::Impl::connectParts()
     connect(m_sources, &SourceBar::sourceChosen, &m_window, &MainWindow::sourceChosen);
     connect(m_sources, &SourceBar::sourcesWanted, &m_window, &MainWindow::sourcesWanted);
     connect(&m_trim->trimmer(), &Trimmer::moved, &m_window, &MainWindow::trimmerMoved);
-    connect(m_hookUp, &HookUpPage::measureSettingsChosen, &m_window, &MainWindow::measureSettingsChosen);
-    connect(m_record, &RecordPage::pictureScaleChosen, this,
-            [this](int scale) { m_actions.pictureScale->setChecked(scale == 2); });
+    connect(m_hookUp,
+            &HookUpPage::measureSettingsChosen,
+            &m_window,
+            &MainWindow::measureSettingsChosen);
+    connect(m_record, &RecordPage::pictureScaleChosen, this, [this](int scale) {
+        m_actions.pictureScale->setChecked(scale == 2);
+    });
     connect(m_record, &RecordPage::pictureOfTrimWanted, this, [this] {
         m_actions.pages[static_cast<std::size_t>(Page::Trim)]->trigger();
         savePage();
@@ -225,7 +238,8 @@ void MainWindow::Impl::setPage(int index)
 {
     m_pages->setCurrentIndex(index);
     m_actions.pages[static_cast<std::size_t>(index)]->setChecked(true);
-    m_adviceLabel->setTypeSizes(index == static_cast<int>(Page::Trim) ? kTrimAdvice : kOtherAdvice, kLeastAdvice, 1);
+    m_adviceLabel->setTypeSizes(
+        index == static_cast<int>(Page::Trim) ? kTrimAdvice : kOtherAdvice, kLeastAdvice, 1);
     focusPage();
     showNow();
     announceView();
@@ -281,8 +295,10 @@ void MainWindow::Impl::savePage()
         emit m_window.pictureWanted({m_arms, u"arms-length"_s, tr("Arm's length view")});
         return;
     }
-    emit m_window.pictureWanted({m_sheet, QString::fromLatin1(kPageWords.at(static_cast<std::size_t>(m_pages->currentIndex()))),
-                                 page()->accessibleName()});
+    emit m_window.pictureWanted(
+        {m_sheet,
+         QString::fromLatin1(kPageWords.at(static_cast<std::size_t>(m_pages->currentIndex()))),
+         page()->accessibleName()});
 }
 
 void MainWindow::Impl::savePlot()
@@ -291,7 +307,8 @@ void MainWindow::Impl::savePlot()
     const QWidget* pointed = m_window.childAt(m_window.mapFromGlobal(QCursor::pos()));
     const auto at = std::find(plots.begin(), plots.end(), pointed);
     if (at == plots.end()) {
-        m_window.showNotice(tr("Point at a plot first: the picture is taken of the one under the pointer."));
+        m_window.showNotice(
+            tr("Point at a plot first: the picture is taken of the one under the pointer."));
         return;
     }
     emit m_window.pictureWanted({*at, (*at)->plainName(), (*at)->accessibleName()});
@@ -326,7 +343,8 @@ void MainWindow::Impl::showTable()
 
 BenchPage* MainWindow::Impl::page() const
 {
-    return m_views->currentWidget() == m_arms ? m_arms : qobject_cast<BenchPage*>(m_pages->currentWidget());
+    return m_views->currentWidget() == m_arms ? m_arms
+                                              : qobject_cast<BenchPage*>(m_pages->currentWidget());
 }
 
 double MainWindow::Impl::lastDrawMs() const
@@ -341,7 +359,9 @@ double MainWindow::Impl::lastDrawMs() const
 void MainWindow::Impl::startPolling()
 {
     const double rate = m_window.screen() != nullptr ? m_window.screen()->refreshRate() : 0.0;
-    m_poll.start(rate > 0.0 ? std::clamp(static_cast<int>(1000.0 / rate), kFastestPollMs, kSlowestPollMs) : kSlowestPollMs);
+    m_poll.start(rate > 0.0
+                     ? std::clamp(static_cast<int>(1000.0 / rate), kFastestPollMs, kSlowestPollMs)
+                     : kSlowestPollMs);
 }
 
 void MainWindow::Impl::poll()
@@ -357,7 +377,8 @@ void MainWindow::Impl::poll()
     }
     m_newest = std::move(frame);
     if (m_newest) {
-        m_sources->meter().feed(m_newest->peakFs, m_newest->rmsFs, isOverloaded(*m_newest), m_clock.elapsed());
+        m_sources->meter().feed(
+            m_newest->peakFs, m_newest->rmsFs, isOverloaded(*m_newest), m_clock.elapsed());
         m_bottom->setFramesLost(m_newest->framesLost);
     } else {
         m_sources->meter().clear();

@@ -1,28 +1,30 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <functional>
-#include <memory>
-
-#include <QMainWindow>
-
 #include "core/measure/frame.h"
 #include "ui/bench_state.h"
 #include "ui/theme.h"
+
+#include <QMainWindow>
+
+#include <functional>
+#include <memory>
 
 namespace sinewright::ui {
 
 enum class Page { HookUp, Trim, WarmUp, Network, Record };
 
 /// A picture the user asked for: what, how large, and the figures to set under it.
-struct PictureRequest {
+struct PictureRequest
+{
     QWidget* subject = nullptr; ///< the page, or the plot under the pointer
     QString subjectName;        ///< plain word for the file name: "trim", "spectrum", ...
     QString title;              ///< the same for the caption, in the user's language
 };
 
 /// What of the window is remembered between runs.
-struct ViewSettings {
+struct ViewSettings
+{
     ThemeName theme = ThemeName::Paper;
     Page page = Page::Trim;
     int pictureScale = 1; ///< 1 or 2
@@ -31,7 +33,8 @@ struct ViewSettings {
 
 /// The window: rail, pages, source bar and bottom line. It pulls the newest frame at display rate, draws what is
 /// visible, and says what the user wants through signals. It computes no figure and knows no audio.
-class MainWindow final : public QMainWindow {
+class MainWindow final : public QMainWindow
+{
     Q_OBJECT
 public:
     /// The newest frame, or null; called by the display timer.

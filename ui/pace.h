@@ -4,7 +4,8 @@
 namespace sinewright::ui {
 
 /// Draws every new frame while drawing is cheap, every other one once it is not.
-class Pace final {
+class Pace final
+{
 public:
     static constexpr double kCostlyMs = 8.0; ///< drawing one frame longer than this halves the rate
 

@@ -1,6 +1,10 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/picture.h"
 
+#include "ui/figure_text.h"
+#include "ui/reading_choice.h"
+#include "ui/theme.h"
+
 #include <qcustomplot.h>
 
 #include <QCoreApplication>
@@ -9,28 +13,26 @@
 #include <algorithm>
 #include <cmath>
 
-#include "ui/figure_text.h"
-#include "ui/reading_choice.h"
-#include "ui/theme.h"
-
 namespace sinewright::ui {
 
 using namespace Qt::StringLiterals;
 
 namespace {
 
-struct Words {
+struct Words
+{
     Q_DECLARE_TR_FUNCTIONS(sinewright::ui::Picture)
 };
 
-constexpr int kMargin = 16;      ///< around the widget and the caption
+constexpr int kMargin = 16; ///< around the widget and the caption
 constexpr int kTitlePixels = 17;
 constexpr int kTextPixels = 13;
 constexpr double kLeading = 1.5;
 
 /// A plot keeps its drawing in a buffer of the screen's resolution: this gives it the picture's for as long as the
 /// picture is taken.
-class FinePlots final {
+class FinePlots final
+{
 public:
     FinePlots(QWidget& subject, int scale) : m_plots(subject.findChildren<QCustomPlot*>())
     {
@@ -88,26 +90,38 @@ QString figuresLine(const core::Frame& frame)
 
 QString settingsLine(const core::MeasureSettings& settings)
 {
-    const QString weighting = settings.weighting == core::Weighting::A        ? Words::tr("A-weighted")
-                              : settings.weighting == core::Weighting::Itu468 ? Words::tr("468-weighted, rms detector")
-                                                                              : Words::tr("not weighted");
-    const QString fullScale = settings.fullScaleVrms
-                                  ? Words::tr("full scale %1 rms").arg(joined(voltFigure(settings.fullScaleVrms)))
-                                  : Words::tr("volts not calibrated");
-    return joinedLine({Words::tr("band %1 to %2").arg(numberText(settings.band.lowHz, 0), joined({numberText(settings.band.highHz, 0), u"Hz"_s})),
-                       Words::tr("harmonics 2 to %1").arg(settings.harmonicCount), weighting, fullScale});
+    const QString weighting = settings.weighting == core::Weighting::A ? Words::tr("A-weighted")
+                              : settings.weighting == core::Weighting::Itu468
+                                  ? Words::tr("468-weighted, rms detector")
+                                  : Words::tr("not weighted");
+    const QString fullScale =
+        settings.fullScaleVrms
+            ? Words::tr("full scale %1 rms").arg(joined(voltFigure(settings.fullScaleVrms)))
+            : Words::tr("volts not calibrated");
+    return joinedLine({Words::tr("band %1 to %2")
+                           .arg(numberText(settings.band.lowHz, 0),
+                                joined({numberText(settings.band.highHz, 0), u"Hz"_s})),
+                       Words::tr("harmonics 2 to %1").arg(settings.harmonicCount),
+                       weighting,
+                       fullScale});
 }
 
 } // namespace
 
-PictureCaption captionFor(const QString& title, const core::Frame* frame, const BenchState& bench,
-                          const core::MeasureSettings& settings, const QDateTime& when)
+PictureCaption captionFor(const QString& title,
+                          const core::Frame* frame,
+                          const BenchState& bench,
+                          const core::MeasureSettings& settings,
+                          const QDateTime& when)
 {
     PictureCaption caption;
     caption.title = title;
-    caption.when = when.toOffsetFromUtc(when.offsetFromUtc()).toString(Qt::ISODate).replace(u'T', u' ');
-    caption.source = joinedLine({bench.source.label, bench.rateHz > 0.0 ? rateText(bench.rateHz) : QString(),
-                                 Words::tr("channel %1 of %2").arg(bench.channel).arg(bench.channels)});
+    caption.when =
+        when.toOffsetFromUtc(when.offsetFromUtc()).toString(Qt::ISODate).replace(u'T', u' ');
+    caption.source =
+        joinedLine({bench.source.label,
+                    bench.rateHz > 0.0 ? rateText(bench.rateHz) : QString(),
+                    Words::tr("channel %1 of %2").arg(bench.channel).arg(bench.channels)});
     caption.settings = settingsLine(settings);
     caption.figures = frame != nullptr ? figuresLine(*frame) : Words::tr("nothing measured yet");
     return caption;
@@ -116,8 +130,10 @@ PictureCaption captionFor(const QString& title, const core::Frame* frame, const 
 QImage composePicture(QWidget* subject, const PictureCaption& caption, int scale)
 {
     const QPalette palette = subject->palette();
-    // A window reaches the picture's edges; a page or a plot gets a margin of paper.
-    const int edge = subject->isWindow() ? 0 : kMargin;
+    // What fills its window reaches the picture's edges; a page or a plot gets a margin of paper.
+    const int edge =
+        subject->size() == subject->window()->size() ? 0
+                                                                                          : kMargin;
     const int width = subject->width() + 2 * edge;
     const int textWidth = width - 2 * kMargin;
     const QFont titleFont = sentenceFont(kTitlePixels);
@@ -129,11 +145,14 @@ QImage composePicture(QWidget* subject, const PictureCaption& caption, int scale
     int stripHeight = kMargin + titleHeight;
     QList<QRect> places;
     for (const QString& line : std::as_const(lines)) {
-        const int height = metrics.boundingRect(QRect(0, 0, textWidth, 10000), Qt::TextWordWrap, line).height() + 4;
+        const int height =
+            metrics.boundingRect(QRect(0, 0, textWidth, 10000), Qt::TextWordWrap, line).height() +
+            4;
         places << QRect(kMargin, subject->height() + edge + stripHeight, textWidth, height);
         stripHeight += height;
     }
-    QImage image(width * scale, (subject->height() + edge + stripHeight + kMargin) * scale,
+    QImage image(width * scale,
+                 (subject->height() + edge + stripHeight + kMargin) * scale,
                  QImage::Format_RGB32);
     image.setDevicePixelRatio(scale);
     image.fill(palette.color(QPalette::Window));
@@ -144,7 +163,8 @@ QImage composePicture(QWidget* subject, const PictureCaption& caption, int scale
     }
     const int top = subject->height() + edge;
     painter.setPen(palette.color(QPalette::PlaceholderText));
-    painter.drawLine(QPointF(kMargin, top + kMargin / 2.0), QPointF(width - kMargin, top + kMargin / 2.0));
+    painter.drawLine(QPointF(kMargin, top + kMargin / 2.0),
+                     QPointF(width - kMargin, top + kMargin / 2.0));
     painter.setPen(palette.color(QPalette::WindowText));
     painter.setFont(titleFont);
     const QRect titlePlace(kMargin, top + kMargin - 2, textWidth, titleHeight);

@@ -1,21 +1,22 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <memory>
+#include "core/measure/frame.h"
+#include "ui/bench_state.h"
 
 #include <QDateTime>
 #include <QImage>
 #include <QString>
 
-#include "core/measure/frame.h"
-#include "ui/bench_state.h"
+#include <memory>
 
 class QWidget;
 
 namespace sinewright::ui {
 
 /// What is set under a picture. Empty lines are left out.
-struct PictureCaption {
+struct PictureCaption
+{
     QString title;    ///< what is shown: "Trim", "Spectrum"
     QString when;     ///< date and time with offset
     QString source;   ///< name, rate, channel
@@ -24,13 +25,17 @@ struct PictureCaption {
 };
 
 /// The caption of a picture of `frame` (null: nothing measured yet).
-[[nodiscard]] PictureCaption captionFor(const QString& title, const core::Frame* frame, const BenchState& bench,
-                                        const core::MeasureSettings& settings, const QDateTime& when);
+[[nodiscard]] PictureCaption captionFor(const QString& title,
+                                        const core::Frame* frame,
+                                        const BenchState& bench,
+                                        const core::MeasureSettings& settings,
+                                        const QDateTime& when);
 
 /// The widget as it stands, with the caption strip set under it.
 ///
 /// @param scale  1 or 2: pixels of the picture over logical pixels of the widget.
-/// @return       The widget at that scale and the strip, with a margin of paper around all but a window; device
+/// @return       The widget at that scale and the strip, with a margin of paper around all but what fills its
+///               window; device
 ///               pixel ratio 1.
 [[nodiscard]] QImage composePicture(QWidget* subject, const PictureCaption& caption, int scale);
 

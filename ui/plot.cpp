@@ -23,9 +23,9 @@ constexpr qint64 kDescribeEveryMs = 1000;
 } // namespace
 
 Overprint::Overprint(QCustomPlot* plot, const QString& layer, Paint paint)
-    : QCPLayerable(plot, layer), m_paint(std::move(paint))
-{
-}
+    : QCPLayerable(plot, layer)
+    , m_paint(std::move(paint))
+{}
 
 void Overprint::applyDefaultAntialiasingHint(QCPPainter* painter) const
 {
@@ -104,7 +104,8 @@ void Plot::setSideMargins(int left, int right)
 
 void Plot::applyMargins()
 {
-    axisRect()->setMargins(QMargins(m_leftMargin, 2 * m_typeSize, m_rightMargin, 2 * m_typeSize - 2));
+    axisRect()->setMargins(
+        QMargins(m_leftMargin, 2 * m_typeSize, m_rightMargin, 2 * m_typeSize - 2));
 }
 
 void Plot::styleAxis(QCPAxis& axis, const Theme& theme, int typeSize)

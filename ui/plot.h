@@ -1,17 +1,18 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "ui/theme.h"
+
 #include <qcustomplot.h>
 
 #include <functional>
 #include <vector>
 
-#include "ui/theme.h"
-
 namespace sinewright::ui {
 
 /// Something painted by hand on a layer of a plot, in pixels: stems, rules, numbers.
-class Overprint final : public QCPLayerable {
+class Overprint final : public QCPLayerable
+{
 public:
     using Paint = std::function<void(QCPPainter&)>;
     Overprint(QCustomPlot* plot, const QString& layer, Paint paint);
@@ -26,11 +27,13 @@ private:
 
 /// What all plots of the window share: a title set flush left over the figure, keys of the lines flush right, hair
 /// axes, fixed margins so that neighbours align, a note in place of data that are not there.
-class Plot : public QCustomPlot {
+class Plot : public QCustomPlot
+{
     Q_OBJECT
 public:
     /// A line's name at the right end of the title row, behind a sample of the line.
-    struct Key {
+    struct Key
+    {
         QString text;
         QPen pen;
     };

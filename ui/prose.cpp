@@ -1,11 +1,11 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/prose.h"
 
+#include "ui/theme.h"
+
 #include <QFrame>
 #include <QHBoxLayout>
 #include <QScrollArea>
-
-#include "ui/theme.h"
 
 namespace sinewright::ui {
 

@@ -31,7 +31,10 @@ QString tipOf(const QAction& action)
 } // namespace
 
 RailButton::RailButton(QAction* action, int number, QWidget* parent)
-    : QAbstractButton(parent), m_action(action), m_number(number), m_theme(&ui::theme(ThemeName::Paper))
+    : QAbstractButton(parent)
+    , m_action(action)
+    , m_number(number)
+    , m_theme(&ui::theme(ThemeName::Paper))
 {
     setCheckable(action->isCheckable());
     setFocusPolicy(Qt::TabFocus);
@@ -117,10 +120,14 @@ void RailButton::paintCommand(QPainter& painter) const
     painter.setFont(figureFont(kCommandType - 1));
     painter.setPen(m_theme->inkSoft);
     const QString key = m_action->shortcut().toString(QKeySequence::NativeText);
-    painter.drawText(QPointF(width() - kMargin + 4 - QFontMetricsF(painter.font()).horizontalAdvance(key), baseline), key);
+    painter.drawText(
+        QPointF(width() - kMargin + 4 - QFontMetricsF(painter.font()).horizontalAdvance(key),
+                baseline),
+        key);
 }
 
-Rail::Rail(const QList<QAction*>& pages, const QList<QAction*>& commands, QWidget* parent) : QWidget(parent)
+Rail::Rail(const QList<QAction*>& pages, const QList<QAction*>& commands, QWidget* parent)
+    : QWidget(parent)
 {
     setObjectName(u"rail"_s);
     setAttribute(Qt::WA_StyledBackground);

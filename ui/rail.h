@@ -1,12 +1,12 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "ui/theme.h"
+
 #include <QAbstractButton>
 #include <QAction>
 #include <QList>
 #include <QWidget>
-
-#include "ui/theme.h"
 
 class QVBoxLayout;
 
@@ -14,7 +14,8 @@ namespace sinewright::ui {
 
 /// An action set as a line of the rail: pages large with their number in the order of the job, the rest small with
 /// the key that does the same.
-class RailButton final : public QAbstractButton {
+class RailButton final : public QAbstractButton
+{
     Q_OBJECT
 public:
     /// @param number  of the page, from 1; 0 for anything else.
@@ -39,7 +40,8 @@ private:
 };
 
 /// The left rail: the five pages above, what one wants at hand on any page below.
-class Rail final : public QWidget {
+class Rail final : public QWidget
+{
     Q_OBJECT
 public:
     Rail(const QList<QAction*>& pages, const QList<QAction*>& commands, QWidget* parent);

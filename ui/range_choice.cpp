@@ -12,9 +12,10 @@ namespace {
 
 constexpr std::array<double, 3> kSteps{1.0, 2.0, 5.0};
 constexpr double kDecade = 10.0;
-constexpr double kSlack = 1e-9; ///< relative; a value that is a step but for rounding counts as that step
-constexpr double kRoom = 1.15;  ///< free space that a range leaves beyond the data, as a factor
-constexpr double kLoose = 2.5;  ///< a range so many times too wide is chosen anew
+constexpr double kSlack =
+    1e-9; ///< relative; a value that is a step but for rounding counts as that step
+constexpr double kRoom = 1.15; ///< free space that a range leaves beyond the data, as a factor
+constexpr double kLoose = 2.5; ///< a range so many times too wide is chosen anew
 
 bool fits(AxisRange inner, AxisRange outer)
 {
@@ -56,8 +57,9 @@ AxisRange logRange(double lowest, double highest, AxisRange current)
         wanted.low = stepBelow(middle / std::sqrt(kDecade));
         wanted.high = std::max(wanted.high, wanted.low * kDecade);
     }
-    const bool keeps = current.low > 0.0 && fits({lowest, highest}, current) &&
-                       std::log(current.high / current.low) < kLoose * std::log(wanted.high / wanted.low);
+    const bool keeps =
+        current.low > 0.0 && fits({lowest, highest}, current) &&
+        std::log(current.high / current.low) < kLoose * std::log(wanted.high / wanted.low);
     return keeps ? current : wanted;
 }
 
@@ -99,6 +101,26 @@ std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points, double 
         result.push_back(points[std::min(low, high)]);
         if (low != high) {
             result.push_back(points[std::max(low, high)]);
+        }
+    }
+    return result;
+}
+
+std::vector<QPointF>
+dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off)
+{
+    std::vector<QPointF> result;
+    result.reserve(points.size());
+    bool isParted = true;
+    for (const QPointF& point : points) {
+        const double column = std::floor(point.x() / columnWidth);
+        const double place = column - std::floor(column / (on + off)) * (on + off);
+        if (place < on) {
+            result.push_back(point);
+            isParted = false;
+        } else if (!isParted) {
+            result.emplace_back(point.x(), std::numeric_limits<double>::quiet_NaN());
+            isParted = true;
         }
     }
     return result;

@@ -1,14 +1,15 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <vector>
-
 #include <QPointF>
+
+#include <vector>
 
 namespace sinewright::ui {
 
 /// What an axis covers.
-struct AxisRange {
+struct AxisRange
+{
     double low = 0.0;
     double high = 0.0;
     [[nodiscard]] double span() const { return high - low; }
@@ -22,7 +23,8 @@ struct AxisRange {
 [[nodiscard]] AxisRange logRange(double lowest, double highest, AxisRange current);
 
 /// Range of a linear axis, ends on multiples of 1, 2 or 5, `leastSpan` at least.
-[[nodiscard]] AxisRange linearRange(double lowest, double highest, double leastSpan, AxisRange current);
+[[nodiscard]] AxisRange
+linearRange(double lowest, double highest, double leastSpan, AxisRange current);
 
 /// Upper end of a symmetric axis that holds `peak` (> 0) with a little room, from the series 1, 2, 5.
 [[nodiscard]] double symmetricEnd(double peak, double current);
@@ -33,6 +35,12 @@ struct AxisRange {
 
 /// The least and greatest value of every column of `columnWidth` along x, in their order; NaN points part the line
 /// and are kept. Columns lie at multiples of the width, so that a scrolling trace keeps its shape.
-[[nodiscard]] std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points, double columnWidth);
+[[nodiscard]] std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points,
+                                                   double columnWidth);
+
+/// The same line as dashes of `on` columns with `off` between, parted by NaN points: a pen with a dash pattern costs
+/// a multiple of a plain one. Dashes keep their place along x.
+[[nodiscard]] std::vector<QPointF>
+dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off);
 
 } // namespace sinewright::ui

@@ -7,7 +7,8 @@ namespace sinewright::ui {
 
 bool hasWarning(const core::Reading& reading, core::Warning warning)
 {
-    return std::find(reading.warnings.begin(), reading.warnings.end(), warning) != reading.warnings.end();
+    return std::find(reading.warnings.begin(), reading.warnings.end(), warning) !=
+           reading.warnings.end();
 }
 
 ShownReading shownReading(const core::Frame& frame)

@@ -6,8 +6,10 @@
 namespace sinewright::ui {
 
 /// Which of a frame's readings the figures are taken from.
-struct ShownReading {
-    const core::Reading* reading = nullptr; ///< never null once made from a frame; lives as long as the frame
+struct ShownReading
+{
+    const core::Reading* reading =
+        nullptr; ///< never null once made from a frame; lives as long as the frame
     bool isFull = false;
 };
 

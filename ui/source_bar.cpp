@@ -1,6 +1,8 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/source_bar.h"
 
+#include "ui/figure_text.h"
+
 #include <QFileDialog>
 #include <QFileInfo>
 #include <QHBoxLayout>
@@ -8,8 +10,6 @@
 #include <QSignalBlocker>
 
 #include <algorithm>
-
-#include "ui/figure_text.h"
 
 namespace sinewright::ui {
 
@@ -35,7 +35,8 @@ SourceBar::SourceBar(QWidget* parent)
 {
     m_picker->setObjectName(u"sourcePicker"_s);
     m_picker->setAccessibleName(tr("Source"));
-    m_picker->setToolTip(tr("Where the signal comes from: the demo oscillator, an audio interface, or a take on disk."));
+    m_picker->setToolTip(tr("Where the signal comes from: the demo oscillator, an audio interface, "
+                            "or a take on disk."));
     m_picker->setMinimumWidth(170);
     m_picker->setSizePolicy(QSizePolicy::Expanding, QSizePolicy::Fixed);
     m_picker->setMaximumWidth(280);
@@ -121,7 +122,8 @@ void SourceBar::fillRates()
     const QSignalBlocker quiet(m_rate);
     m_rate->clear();
     if (m_state.source.kind == SourceKind::Take) {
-        m_rate->addItem(m_state.rateHz > 0.0 ? rateText(m_state.rateHz) : QString(kAbsent), m_state.rateHz);
+        m_rate->addItem(m_state.rateHz > 0.0 ? rateText(m_state.rateHz) : QString(kAbsent),
+                        m_state.rateHz);
     } else {
         for (const double rate : kRates) {
             m_rate->addItem(rateText(rate), rate);
@@ -168,8 +170,11 @@ void SourceBar::chooseAgain()
 
 void SourceBar::openTake()
 {
-    const QString path = QFileDialog::getOpenFileName(this, tr("Open take"), QString(),
-                                                      tr("Takes (*.wav *.flac *.aif *.aiff *.caf);;All files (*)"));
+    const QString path =
+        QFileDialog::getOpenFileName(this,
+                                     tr("Open take"),
+                                     QString(),
+                                     tr("Takes (*.wav *.flac *.aif *.aiff *.caf);;All files (*)"));
     if (path.isEmpty()) {
         return;
     }

@@ -1,17 +1,18 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <QList>
-#include <QWidget>
-
 #include "ui/bench_state.h"
 #include "ui/choice_box.h"
 #include "ui/level_meter.h"
 
+#include <QList>
+#include <QWidget>
+
 namespace sinewright::ui {
 
 /// Source, rate, channel and the level meter, over the pages.
-class SourceBar final : public QWidget {
+class SourceBar final : public QWidget
+{
     Q_OBJECT
 public:
     explicit SourceBar(QWidget* parent = nullptr);

@@ -1,11 +1,11 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/spectrum_model.h"
 
-#include <algorithm>
-#include <cmath>
-
 #include "core/units.h"
 #include "ui/reading_choice.h"
+
+#include <algorithm>
+#include <cmath>
 
 namespace sinewright::ui {
 
@@ -14,7 +14,7 @@ namespace {
 constexpr double kLowestShownHz = 20.0;
 constexpr double kLowestShownForLowToneHz = 5.0;
 constexpr double kLowToneHz = 40.0;
-constexpr double kTopDb = 5.0;          ///< a little room over 0 for the fundamental's number
+constexpr double kTopDb = 5.0; ///< a little room over 0 for the fundamental's number
 constexpr double kFloorStepDb = 10.0;
 constexpr double kRoomUnderNoiseDb = 20.0; ///< under the peaks of the noise
 constexpr double kHighestFloorDb = -100.0;
@@ -22,9 +22,7 @@ constexpr double kLowestFloorDb = -200.0;
 
 } // namespace
 
-SpectrumModel::SpectrumModel(QObject* parent) : QObject(parent)
-{
-}
+SpectrumModel::SpectrumModel(QObject* parent) : QObject(parent) {}
 
 void SpectrumModel::setColumns(int columns)
 {
@@ -78,7 +76,8 @@ void SpectrumModel::rebuildColumns(double offsetDb)
     const double logLow = std::log(m_frequencyRange.low);
     const double perColumn = (std::log(m_frequencyRange.high) - logLow) / m_columns;
     // Never bin 0: a log axis has no place for DC.
-    auto bin = std::max<std::size_t>(1, static_cast<std::size_t>(m_frequencyRange.low / view.binHz));
+    auto bin =
+        std::max<std::size_t>(1, static_cast<std::size_t>(m_frequencyRange.low / view.binHz));
     for (int column = 0; column < m_columns && bin < bins; ++column) {
         const double endHz = std::exp(logLow + perColumn * (column + 1));
         const auto end = std::min(bins, static_cast<std::size_t>(std::ceil(endHz / view.binHz)));
@@ -105,8 +104,10 @@ void SpectrumModel::rebuildStems()
     m_stems.push_back({1, *reading.frequencyHz, carrierDb, true});
     for (const core::HarmonicReading& harmonic : reading.harmonics) {
         if (harmonic.ratio > 0.0) {
-            m_stems.push_back({harmonic.order, harmonic.frequencyHz,
-                               carrierDb + core::decibelsFromRatio(harmonic.ratio), harmonic.inBand});
+            m_stems.push_back({harmonic.order,
+                               harmonic.frequencyHz,
+                               carrierDb + core::decibelsFromRatio(harmonic.ratio),
+                               harmonic.inBand});
         }
     }
 }
@@ -124,8 +125,10 @@ void SpectrumModel::chooseLevelRange()
     const auto middle = levels.begin() + static_cast<std::ptrdiff_t>(levels.size() / 2);
     std::nth_element(levels.begin(), middle, levels.end());
     const double noise = *middle - kRoomUnderNoiseDb;
-    const double wanted = std::clamp(std::floor(noise / kFloorStepDb) * kFloorStepDb, kLowestFloorDb, kHighestFloorDb);
-    const bool keeps = m_levelRange.span() > 0.0 && noise >= m_levelRange.low - kRoomUnderNoiseDb / 4.0 &&
+    const double wanted = std::clamp(
+        std::floor(noise / kFloorStepDb) * kFloorStepDb, kLowestFloorDb, kHighestFloorDb);
+    const bool keeps = m_levelRange.span() > 0.0 &&
+                       noise >= m_levelRange.low - kRoomUnderNoiseDb / 4.0 &&
                        wanted <= m_levelRange.low + 2.0 * kFloorStepDb;
     m_levelRange = {keeps ? m_levelRange.low : wanted, kTopDb};
 }

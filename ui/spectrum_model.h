@@ -1,22 +1,23 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <memory>
-#include <optional>
-#include <vector>
+#include "core/measure/frame.h"
+#include "ui/range_choice.h"
 
 #include <QObject>
 #include <QPointF>
 
-#include "core/measure/frame.h"
-#include "ui/range_choice.h"
+#include <memory>
+#include <optional>
+#include <vector>
 
 namespace sinewright::ui {
 
 enum class LevelUnit { Dbc, Dbfs };
 
 /// One numbered stem: the fundamental (order 1) or a harmonic.
-struct Stem {
+struct Stem
+{
     int order = 1;
     double frequencyHz = 0.0;
     double levelDb = 0.0; ///< in the model's unit
@@ -24,7 +25,8 @@ struct Stem {
 };
 
 /// The spectrum as it is drawn: extremes per pixel column over log frequency, and the stems.
-class SpectrumModel final : public QObject {
+class SpectrumModel final : public QObject
+{
     Q_OBJECT
 public:
     explicit SpectrumModel(QObject* parent = nullptr);

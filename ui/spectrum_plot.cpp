@@ -1,11 +1,11 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/spectrum_plot.h"
 
+#include "ui/figure_text.h"
+
 #include <algorithm>
 #include <cmath>
 #include <limits>
-
-#include "ui/figure_text.h"
 
 namespace sinewright::ui {
 
@@ -30,7 +30,8 @@ QString frequencyLabel(double hz)
 SpectrumPlot::SpectrumPlot(QWidget* parent)
     : Plot(u"spectrum"_s, tr("Spectrum"), u"dBFS"_s, parent)
     , m_frequencies(QSharedPointer<StepTicker>::create(frequencyLabel, kRoomiestDecades))
-    , m_lowest(nullptr), m_highest(nullptr)
+    , m_lowest(nullptr)
+    , m_highest(nullptr)
 {
     xAxis->setScaleType(QCPAxis::stLogarithmic);
     xAxis->setTicker(m_frequencies);
@@ -73,7 +74,8 @@ void SpectrumPlot::present()
     setNote(m_model.isEmpty() ? tr("The spectrum appears with the first samples.") : QString());
     if (m_model.stems().size() > 1) {
         const auto strongest =
-            std::max_element(m_model.stems().begin() + 1, m_model.stems().end(),
+            std::max_element(m_model.stems().begin() + 1,
+                             m_model.stems().end(),
                              [](const Stem& a, const Stem& b) { return a.levelDb < b.levelDb; });
         describe(tr("Spectrum. Fundamental %1; strongest harmonic: number %2.")
                      .arg(roundFrequencyText(m_model.stems().front().frequencyHz))
@@ -100,7 +102,8 @@ void SpectrumPlot::paintStems(QCPPainter& painter) const
     const QRect inside = axisRect()->rect();
     painter.setFont(figureFont(typeSize()));
     const QFontMetricsF metrics(painter.font());
-    struct Placed {
+    struct Placed
+    {
         const Stem* stem = nullptr;
         QPointF top;
     };
@@ -110,8 +113,10 @@ void SpectrumPlot::paintStems(QCPPainter& painter) const
                           std::max<double>(yAxis->coordToPixel(stem.levelDb), inside.top()));
         if (top.x() <= inside.right() && top.y() < inside.bottom()) {
             placed.push_back({&stem, top});
-            painter.setPen(QPen(stem.order == 1 ? colours().ink : colours().slate, kStemWidth,
-                                stem.inBand ? Qt::SolidLine : Qt::DotLine, Qt::FlatCap));
+            painter.setPen(QPen(stem.order == 1 ? colours().ink : colours().slate,
+                                kStemWidth,
+                                stem.inBand ? Qt::SolidLine : Qt::DotLine,
+                                Qt::FlatCap));
             painter.drawLine(QPointF(top.x(), inside.bottom()), top);
         }
     }

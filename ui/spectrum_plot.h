@@ -8,7 +8,8 @@
 namespace sinewright::ui {
 
 /// Spectrum over log frequency with the fundamental and its harmonics as numbered stems.
-class SpectrumPlot final : public Plot {
+class SpectrumPlot final : public Plot
+{
     Q_OBJECT
 public:
     explicit SpectrumPlot(QWidget* parent = nullptr);

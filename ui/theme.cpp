@@ -17,7 +17,8 @@ constexpr int kLabelSpacingPercent = 108;
 
 const QStringList kSerifFamilies{u"Charis SIL"_s, u"DejaVu Serif"_s};
 const QStringList kSansFamilies{u"Roboto"_s, u"DejaVu Sans"_s};
-const QStringList kNarrowFamilies{u"Roboto Condensed"_s, u"DejaVu Sans Condensed"_s, u"DejaVu Sans"_s};
+const QStringList kNarrowFamilies{
+    u"Roboto Condensed"_s, u"DejaVu Sans Condensed"_s, u"DejaVu Sans"_s};
 
 Theme paper()
 {
@@ -151,10 +152,17 @@ QScrollBar::add-line, QScrollBar::sub-line { height: 0; width: 0; }
 QScrollBar::add-page, QScrollBar::sub-page { background: @page; }
 )"_s;
     const std::pair<QString, QColor> names[] = {
-        {u"@inkSoft"_s, theme.inkSoft},   {u"@ink"_s, theme.ink},           {u"@page"_s, theme.page},
-        {u"@rail"_s, theme.rail},         {u"@hairline"_s, theme.hairline}, {u"@grid"_s, theme.grid},
-        {u"@wash"_s, theme.wash},         {u"@slate"_s, theme.slate},       {u"@copper"_s, theme.copper},
-        {u"@verdigris"_s, theme.verdigris}, {u"@alert"_s, theme.alert},
+        {u"@inkSoft"_s, theme.inkSoft},
+        {u"@ink"_s, theme.ink},
+        {u"@page"_s, theme.page},
+        {u"@rail"_s, theme.rail},
+        {u"@hairline"_s, theme.hairline},
+        {u"@grid"_s, theme.grid},
+        {u"@wash"_s, theme.wash},
+        {u"@slate"_s, theme.slate},
+        {u"@copper"_s, theme.copper},
+        {u"@verdigris"_s, theme.verdigris},
+        {u"@alert"_s, theme.alert},
     };
     for (const auto& [name, colour] : names) {
         sheet.replace(name, colour.name());

@@ -14,7 +14,8 @@ enum class ThemeName { Paper, Dusk };
 ///
 /// Whatever text is set in has at least 4.5:1 against `page` and `rail` (tst_theme); `hairline`, `grid`
 /// and `wash` carry no meaning.
-struct Theme {
+struct Theme
+{
     QColor page;      ///< the sheet everything is set on
     QColor rail;      ///< a shade off the page, for the rail at the left
     QColor ink;       ///< sentences, figures, axis numbers

@@ -8,7 +8,8 @@
 namespace sinewright::ui {
 
 /// Evenly spaced round numbers, set with a true minus sign.
-class NumberTicker final : public QCPAxisTicker {
+class NumberTicker final : public QCPAxisTicker
+{
 public:
     /// @param step  distance of the ticks; 0 lets the axis choose about `count` of them.
     explicit NumberTicker(double step = 0.0, int count = 5);
@@ -25,7 +26,8 @@ private:
 };
 
 /// 1, 2, 5, 10, ... along a log axis; only the tens when the axis is short for more.
-class StepTicker final : public QCPAxisTicker {
+class StepTicker final : public QCPAxisTicker
+{
 public:
     using Label = std::function<QString(double)>;
     /// @param roomiestDecades  with more decades than this on the axis only the tens are ticked.

@@ -15,7 +15,8 @@ constexpr double kLeastPercent = 1e-7; ///< keeps a log axis from a true zero
 
 using Figure = std::optional<double> core::TrendPoint::*;
 
-std::vector<QPointF> lineOf(const core::TrendSnapshot& trend, Figure figure, double factor, double columnS)
+std::vector<QPointF>
+lineOf(const core::TrendSnapshot& trend, Figure figure, double factor, double columnS)
 {
     std::vector<QPointF> points;
     points.reserve(trend.points.size());
@@ -24,7 +25,8 @@ std::vector<QPointF> lineOf(const core::TrendSnapshot& trend, Figure figure, dou
             points.emplace_back(point.timeS, std::numeric_limits<double>::quiet_NaN());
         }
         const std::optional<double>& value = point.*figure;
-        points.emplace_back(point.timeS, value ? *value * factor : std::numeric_limits<double>::quiet_NaN());
+        points.emplace_back(point.timeS,
+                            value ? *value * factor : std::numeric_limits<double>::quiet_NaN());
     }
     return reduceToColumns(points, columnS);
 }
@@ -34,7 +36,8 @@ std::optional<AxisRange> extremes(const std::vector<QPointF>& points)
     std::optional<AxisRange> result;
     for (const QPointF& point : points) {
         if (!std::isnan(point.y())) {
-            result = result ? AxisRange{std::min(result->low, point.y()), std::max(result->high, point.y())}
+            result = result ? AxisRange{std::min(result->low, point.y()),
+                                        std::max(result->high, point.y())}
                             : AxisRange{point.y(), point.y()};
         }
     }
@@ -43,9 +46,7 @@ std::optional<AxisRange> extremes(const std::vector<QPointF>& points)
 
 } // namespace
 
-TrendModel::TrendModel(QObject* parent) : QObject(parent)
-{
-}
+TrendModel::TrendModel(QObject* parent) : QObject(parent) {}
 
 void TrendModel::setColumns(int columns)
 {
@@ -73,20 +74,26 @@ void TrendModel::rebuild()
     m_thd.clear();
     m_thdn.clear();
     m_level.clear();
+    m_levelDashes.clear();
     m_best.reset();
     if (m_frame && m_frame->trend) {
-        const double columnS = core::Trend::kSpanS / std::max(1, m_columns);
+        const auto& points = m_frame->trend->points;
+        const double pastS = points.empty() ? 0.0 : m_frame->timeS - points.front().timeS;
+        m_spanS = pastS > kShortSpanS ? core::Trend::kSpanS : kShortSpanS;
+        const double columnS = m_spanS / std::max(1, m_columns);
         m_thd = lineOf(*m_frame->trend, &core::TrendPoint::thdRatio, kPercent, columnS);
         m_thdn = lineOf(*m_frame->trend, &core::TrendPoint::thdnRatio, kPercent, columnS);
         m_level = lineOf(*m_frame->trend, &core::TrendPoint::levelDbfs, 1.0, columnS);
+        m_levelDashes = dashed(m_level, columnS, kDashOn, kDashOff);
         const double now = m_frame->timeS;
-        for (auto* line : {&m_thd, &m_thdn, &m_level}) {
+        for (auto* line : {&m_thd, &m_thdn, &m_level, &m_levelDashes}) {
             for (QPointF& point : *line) {
                 point.rx() -= now;
             }
         }
         if (m_frame->trend->best) {
-            m_best = Best{std::max(0.0, now - m_frame->trend->best->timeS), m_frame->trend->best->thdRatio * kPercent};
+            m_best = Best{std::max(0.0, now - m_frame->trend->best->timeS),
+                          m_frame->trend->best->thdRatio * kPercent};
         }
         chooseRanges();
     }
@@ -97,14 +104,17 @@ void TrendModel::chooseRanges()
 {
     std::optional<AxisRange> percent = extremes(m_thd);
     if (const auto noise = extremes(m_thdn)) {
-        percent = percent ? AxisRange{std::min(percent->low, noise->low), std::max(percent->high, noise->high)} : noise;
+        percent = percent ? AxisRange{std::min(percent->low, noise->low),
+                                      std::max(percent->high, noise->high)}
+                          : noise;
     }
     if (m_best && percent) {
         percent->low = std::min(percent->low, m_best->percent);
         percent->high = std::max(percent->high, m_best->percent);
     }
     if (percent) {
-        m_percentRange = logRange(std::max(percent->low, kLeastPercent), std::max(percent->high, kLeastPercent),
+        m_percentRange = logRange(std::max(percent->low, kLeastPercent),
+                                  std::max(percent->high, kLeastPercent),
                                   m_percentRange);
     }
     if (const auto level = extremes(m_level)) {

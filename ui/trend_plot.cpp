@@ -1,12 +1,12 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/trend_plot.h"
 
-#include <algorithm>
-#include <cmath>
-
 #include "ui/advice.h"
 #include "ui/figure_text.h"
 #include "ui/tickers.h"
+
+#include <algorithm>
+#include <cmath>
 
 namespace sinewright::ui {
 
@@ -28,9 +28,13 @@ QString percentLabel(double percent)
 
 QString timeLabel(double seconds)
 {
-    return seconds == 0.0 ? TrendPlot::tr("now")
-                          //: minutes before now, on the time axis
-                          : TrendPlot::tr("%1 min").arg(numberText(seconds / kMinuteS, 0));
+    if (seconds == 0.0) {
+        return TrendPlot::tr("now");
+    }
+    const double minutes = seconds / kMinuteS;
+    return minutes == std::round(minutes) ? TrendPlot::tr("%1 min").arg(numberText(minutes, 0))
+           : minutes > -1.0               ? TrendPlot::tr("%1 s").arg(numberText(seconds, 0))
+                                          : QString(); // half minutes get a line, not a number
 }
 
 } // namespace
@@ -47,12 +51,6 @@ TrendPlot::TrendPlot(QWidget* parent)
     yAxis->setTicker(QSharedPointer<StepTicker>::create(percentLabel, kRoomiestDecades));
     yAxis2->setTicker(QSharedPointer<NumberTicker>::create(0.0, 6));
     yAxis2->grid()->setVisible(false);
-    auto time = QSharedPointer<QCPAxisTickerText>::create();
-    for (double at = -core::Trend::kSpanS; at <= 0.0; at += kMinuteS) {
-        time->addTick(at, timeLabel(at));
-    }
-    xAxis->setTicker(time);
-    xAxis->setRange(-core::Trend::kSpanS, 0.0);
 
     m_level = addGraph(xAxis, yAxis2);
     m_thdn = addGraph(xAxis, yAxis);
@@ -76,15 +74,33 @@ void TrendPlot::setFrame(std::shared_ptr<const core::Frame> frame)
     draw();
 }
 
+void TrendPlot::setSpan(double seconds)
+{
+    if (seconds == m_spanS) {
+        return;
+    }
+    m_spanS = seconds;
+    const double step = seconds > kMinuteS ? kMinuteS / 2.0 : kMinuteS / 4.0;
+    auto time = QSharedPointer<QCPAxisTickerText>::create();
+    for (double at = -seconds; at <= 0.0; at += step) {
+        time->addTick(at, timeLabel(at));
+    }
+    xAxis->setTicker(time);
+    xAxis->setRange(-seconds, 0.0);
+}
+
 void TrendPlot::present()
 {
+    setSpan(m_model.spanS());
     fill(*m_thd, m_model.thd());
     fill(*m_thdn, m_model.thdn());
-    fill(*m_level, m_model.level());
+    fill(*m_level, m_model.levelDashes());
     const AxisRange percent = m_model.percentRange();
     yAxis->setRange(percent.low, percent.high);
     yAxis2->setRange(m_model.levelRange().low, m_model.levelRange().high);
-    setNote(m_model.isEmpty() ? tr("The trend of the last three minutes grows here as readings come in.") : QString());
+    setNote(m_model.isEmpty()
+                ? tr("The trend of the last three minutes grows here as readings come in.")
+                : QString());
     if (m_model.best()) {
         describe(tr("Trim trend of the last three minutes. Best so far %1 %, %2.")
                      .arg(percentLabel(m_model.best()->percent), ageText(m_model.best()->agoS)));
@@ -96,9 +112,10 @@ void TrendPlot::restyle()
     const Theme& t = colours();
     m_thd->setPen(QPen(t.copper, 2.0, Qt::SolidLine, Qt::RoundCap, Qt::RoundJoin));
     m_thdn->setPen(QPen(t.ink, 1.0));
-    QPen level(t.slate, 1.2);
-    level.setDashPattern({1.5, 2.5});
-    m_level->setPen(level);
+    m_level->setPen(QPen(t.slate, 1.2));
+    QPen level = m_level->pen();
+    level.setDashPattern({TrendModel::kDashOn / level.widthF(), TrendModel::kDashOff / level.widthF()});
+    level.setCapStyle(Qt::FlatCap);
     QPen best(t.verdigris, 1.2);
     best.setDashPattern({8.0, 3.0});
     setKeys({{tr("THD %"), m_thd->pen()},
@@ -124,12 +141,14 @@ void TrendPlot::paintBest(QCPPainter& painter) const
     rule.setDashPattern({8.0, 3.0});
     painter.setPen(rule);
     painter.drawLine(QPointF(inside.left(), y), QPointF(inside.right(), y));
-    if (m_model.best()->agoS <= core::Trend::kSpanS) {
+    if (m_model.best()->agoS <= m_spanS) {
         const double x = xAxis->coordToPixel(-m_model.best()->agoS);
         painter.setPen(QPen(colours().page, 1.5));
         painter.setBrush(colours().verdigris);
-        painter.drawPolygon(QPolygonF({QPointF(x - kBestRadius, y), QPointF(x, y - kBestRadius),
-                                       QPointF(x + kBestRadius, y), QPointF(x, y + kBestRadius)}));
+        painter.drawPolygon(QPolygonF({QPointF(x - kBestRadius, y),
+                                       QPointF(x, y - kBestRadius),
+                                       QPointF(x + kBestRadius, y),
+                                       QPointF(x, y + kBestRadius)}));
         painter.setBrush(Qt::NoBrush);
     }
 }
@@ -142,7 +161,9 @@ void TrendPlot::paintNow(QCPPainter& painter) const
     const QPointF last = m_model.thd().back();
     painter.setPen(QPen(colours().page, 1.5));
     painter.setBrush(colours().copper);
-    painter.drawEllipse(QPointF(xAxis->coordToPixel(last.x()), yAxis->coordToPixel(last.y())), kNowRadius, kNowRadius);
+    painter.drawEllipse(QPointF(xAxis->coordToPixel(last.x()), yAxis->coordToPixel(last.y())),
+                        kNowRadius,
+                        kNowRadius);
     painter.setBrush(Qt::NoBrush);
 }
 

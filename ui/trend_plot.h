@@ -7,7 +7,8 @@
 namespace sinewright::ui {
 
 /// THD and THD+N on a log axis, level on its own, over the last three minutes; the best so far as a rule.
-class TrendPlot final : public Plot {
+class TrendPlot final : public Plot
+{
     Q_OBJECT
 public:
     explicit TrendPlot(QWidget* parent = nullptr);
@@ -21,10 +22,12 @@ protected:
 
 private:
     void present();
+    void setSpan(double seconds);
     void paintBest(QCPPainter& painter) const;
     void paintNow(QCPPainter& painter) const;
 
     TrendModel m_model;
+    double m_spanS = 0.0;
     QCPGraph* m_thd;
     QCPGraph* m_thdn;
     QCPGraph* m_level;

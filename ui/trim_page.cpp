@@ -1,9 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/trim_page.h"
 
-#include <QHBoxLayout>
-#include <QVBoxLayout>
-
 #include "ui/bars_plot.h"
 #include "ui/cycle_plot.h"
 #include "ui/figures_column.h"
@@ -11,6 +8,9 @@
 #include "ui/spectrum_plot.h"
 #include "ui/trend_plot.h"
 #include "ui/trimmer.h"
+
+#include <QHBoxLayout>
+#include <QVBoxLayout>
 
 namespace sinewright::ui {
 

@@ -14,7 +14,8 @@ class TrendPlot;
 class Trimmer;
 
 /// The main page: trim trend, spectrum, harmonic bars, cycle residual and the running figures.
-class TrimPage final : public BenchPage {
+class TrimPage final : public BenchPage
+{
     Q_OBJECT
 public:
     explicit TrimPage(QWidget* parent = nullptr);

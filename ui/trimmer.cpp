@@ -1,6 +1,8 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/trimmer.h"
 
+#include "ui/figure_text.h"
+
 #include <QAction>
 #include <QMouseEvent>
 #include <QPainter>
@@ -9,8 +11,6 @@
 
 #include <algorithm>
 #include <cmath>
-
-#include "ui/figure_text.h"
 
 namespace sinewright::ui {
 
@@ -21,9 +21,9 @@ namespace {
 constexpr double kOhmPerStep = 0.1;
 constexpr int kFineSteps = 2;
 constexpr int kCoarseSteps = 50;
-constexpr int kWheelSteps = 10;     ///< a notch of the wheel
-constexpr int kEnd = 1 << 20;       ///< more than any travel
-constexpr int kNotch = 120;         ///< QWheelEvent::angleDelta() of one notch
+constexpr int kWheelSteps = 10; ///< a notch of the wheel
+constexpr int kEnd = 1 << 20;   ///< more than any travel
+constexpr int kNotch = 120;     ///< QWheelEvent::angleDelta() of one notch
 constexpr double kLabelWidth = 116.0;
 constexpr double kValueWidth = 84.0;
 constexpr double kRulerY = 12.0;
@@ -38,12 +38,15 @@ int stepsOf(double ohm)
 
 } // namespace
 
-Trimmer::Trimmer(QWidget* parent) : QSlider(Qt::Horizontal, parent), m_theme(&ui::theme(ThemeName::Paper))
+Trimmer::Trimmer(QWidget* parent)
+    : QSlider(Qt::Horizontal, parent)
+    , m_theme(&ui::theme(ThemeName::Paper))
 {
     static_assert(kFineSteps * 10 == static_cast<int>(kFineOhm * 100.0));
     setObjectName(u"trimmer"_s);
     setAccessibleName(tr("Virtual trimmer, in tenths of an ohm"));
-    setToolTip(tr("The demo's gain trimmer, in ohm. Drag it, use the wheel (Ctrl: coarse) or the arrow keys."));
+    setToolTip(tr("The demo's gain trimmer, in ohm. Drag it, use the wheel (Ctrl: coarse) or the "
+                  "arrow keys."));
     setFocusPolicy(Qt::StrongFocus);
     setSingleStep(kFineSteps);
     setPageStep(kCoarseSteps);
@@ -133,8 +136,10 @@ void Trimmer::mouseMoveEvent(QMouseEvent* event)
     if (!isSliderDown()) {
         return;
     }
-    const double share = (event->position().x() - kLabelWidth) / (width() - kLabelWidth - kValueWidth);
-    turnTo(minimum() + static_cast<int>(std::lround(std::clamp(share, 0.0, 1.0) * (maximum() - minimum()))));
+    const double share =
+        (event->position().x() - kLabelWidth) / (width() - kLabelWidth - kValueWidth);
+    turnTo(minimum() +
+           static_cast<int>(std::lround(std::clamp(share, 0.0, 1.0) * (maximum() - minimum()))));
     event->accept();
 }
 
@@ -146,7 +151,8 @@ void Trimmer::mouseReleaseEvent(QMouseEvent* /*event*/)
 void Trimmer::wheelEvent(QWheelEvent* event)
 {
     const int step = event->modifiers().testFlag(Qt::ControlModifier) ? kCoarseSteps : kWheelSteps;
-    const int delta = event->angleDelta().y() != 0 ? event->angleDelta().y() : event->angleDelta().x();
+    const int delta =
+        event->angleDelta().y() != 0 ? event->angleDelta().y() : event->angleDelta().x();
     turnBy(static_cast<int>(std::lround(static_cast<double>(delta) * step / kNotch)));
     event->accept();
 }
@@ -161,7 +167,8 @@ void Trimmer::paintEvent(QPaintEvent* /*event*/)
     paintIndex(painter);
     painter.setFont(figureFont(17));
     painter.setPen(m_theme->ink);
-    painter.drawText(QRectF(width() - kValueWidth, 0.0, kValueWidth, 2.0 * kRulerY), Qt::AlignRight | Qt::AlignVCenter,
+    painter.drawText(QRectF(width() - kValueWidth, 0.0, kValueWidth, 2.0 * kRulerY),
+                     Qt::AlignRight | Qt::AlignVCenter,
                      joined({numberText(ohm(), 1), u"Ω"_s}));
 }
 
@@ -182,7 +189,9 @@ void Trimmer::paintRuler(QPainter& painter) const
         if (isNumbered) {
             const QString text = numberText(tick, 0);
             painter.setPen(m_theme->inkSoft);
-            painter.drawText(QPointF(x - metrics.horizontalAdvance(text) / 2.0, kRulerY + 9.0 + kTypeSize), text);
+            painter.drawText(
+                QPointF(x - metrics.horizontalAdvance(text) / 2.0, kRulerY + 9.0 + kTypeSize),
+                text);
         }
     }
 }

@@ -1,17 +1,18 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "ui/theme.h"
+
 #include <QList>
 #include <QSlider>
-
-#include "ui/theme.h"
 
 namespace sinewright::ui {
 
 /// The demo's virtual trimmer: a ruler in ohms with a copper index. Mouse, wheel (with Ctrl coarse) and keys.
 ///
 /// Its keys are actions(), so that the list of keys cannot differ from what they do.
-class Trimmer final : public QSlider {
+class Trimmer final : public QSlider
+{
     Q_OBJECT
 public:
     static constexpr double kFineOhm = 0.2;

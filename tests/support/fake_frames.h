@@ -1,6 +1,8 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "core/measure/frame.h"
+
 #include <algorithm>
 #include <cmath>
 #include <cstdint>
@@ -10,19 +12,21 @@
 #include <random>
 #include <vector>
 
-#include "core/measure/frame.h"
-
 namespace sinewright::tests {
 
 /// Frames as a bench would give them while somebody trims an invented oscillator: crossover distortion falling with
 /// level, a positive rail that is met, noise and a little hum. Seeded; nothing here is measured.
-class FakeBench final {
+class FakeBench final
+{
 public:
     static constexpr double kFramesPerS = 20.0;
     static constexpr double kToneHz = 1189.234;
     static constexpr double kFullScaleVrms = 4.0;
 
-    explicit FakeBench(double rateHz = 96000.0, std::uint32_t seed = 7) : m_rateHz(rateHz), m_random(seed) {}
+    explicit FakeBench(double rateHz = 96000.0, std::uint32_t seed = 7)
+        : m_rateHz(rateHz)
+        , m_random(seed)
+    {}
 
     /// The next frame, a twentieth of a second later, at this level of the oscillator [V rms].
     [[nodiscard]] std::shared_ptr<const core::Frame> next(double volts)
@@ -88,7 +92,8 @@ public:
     /// [V rms] over the share 0 .. 1 of a trimming session: stops with moves and a little bounce between.
     [[nodiscard]] static double voltsAt(double share)
     {
-        constexpr double kStops[] = {1.90, 2.05, 2.18, 2.31, 2.45, 2.60, 2.72, 2.61, 2.52, 2.38, 2.47, 2.50};
+        constexpr double kStops[] = {
+            1.90, 2.05, 2.18, 2.31, 2.45, 2.60, 2.72, 2.61, 2.52, 2.38, 2.47, 2.50};
         constexpr int kCount = static_cast<int>(std::size(kStops));
         const double at = share * kCount;
         const int stop = std::min(kCount - 1, static_cast<int>(at));
@@ -125,7 +130,11 @@ private:
             const double a = isEven ? 2e-6 : crossover(volts) * 0.72 / std::pow(k / 3.0, 0.8);
             const double b = clipping(volts) * (k == 2 ? 1.0 : 0.62) / std::pow(k / 2.0, 1.5);
             const double ratio = std::hypot(a, b) * (1.0 + scatter * normal(m_random));
-            r.harmonics.push_back({k, k * *r.frequencyHz, ratio, isEven ? 90.0 : -98.0, k * *r.frequencyHz <= 20000.0});
+            r.harmonics.push_back({k,
+                                   k * *r.frequencyHz,
+                                   ratio,
+                                   isEven ? 90.0 : -98.0,
+                                   k * *r.frequencyHz <= 20000.0});
             power += ratio * ratio;
         }
         const double noise = 1.8e-4;
@@ -141,14 +150,19 @@ private:
     void keepBest(const core::Reading& full)
     {
         if (full.warnings.empty() && (!m_trend.best || *full.thdRatio < m_trend.best->thdRatio)) {
-            m_trend.best = core::BestReading{full.startS + full.lengthS / 2.0, *full.thdRatio, full.thdnRatio, full.levelDbfs,
-                                             full.levelVrms, full.frequencyHz};
+            m_trend.best = core::BestReading{full.startS + full.lengthS / 2.0,
+                                             *full.thdRatio,
+                                             full.thdnRatio,
+                                             full.levelDbfs,
+                                             full.levelVrms,
+                                             full.frequencyHz};
         }
     }
 
     void addTrendPoint(const core::Reading& quick)
     {
-        m_trend.points.push_back({m_timeS, quick.thdRatio, quick.thdnRatio, quick.levelDbfs, false});
+        m_trend.points.push_back(
+            {m_timeS, quick.thdRatio, quick.thdnRatio, quick.levelDbfs, false});
         while (m_trend.points.front().timeS < m_timeS - core::Trend::kSpanS) {
             m_trend.points.erase(m_trend.points.begin());
         }
@@ -165,7 +179,8 @@ private:
         for (std::size_t i = 0; i < kBins; ++i) {
             const double hz = static_cast<double>(i) * view->binHz;
             const double tilt = 8.0 * std::log10(1.0 + 300.0 / (hz + 5.0));
-            view->levelDbfs.push_back(-136.0F + static_cast<float>(tilt) + 10.0F * std::log10(power(m_random) + 1e-6F));
+            view->levelDbfs.push_back(-136.0F + static_cast<float>(tilt) +
+                                      10.0F * std::log10(power(m_random) + 1e-6F));
         }
         for (const double hum : {50.0, 100.0, 150.0, 250.0}) {
             addLine(*view, hum, -104.0 - hum / 25.0);
@@ -173,7 +188,9 @@ private:
         if (reading.levelDbfs) {
             addLine(*view, *reading.frequencyHz, *reading.levelDbfs);
             for (const core::HarmonicReading& harmonic : reading.harmonics) {
-                addLine(*view, harmonic.frequencyHz, *reading.levelDbfs + 20.0 * std::log10(harmonic.ratio));
+                addLine(*view,
+                        harmonic.frequencyHz,
+                        *reading.levelDbfs + 20.0 * std::log10(harmonic.ratio));
             }
         }
         return view;
@@ -198,10 +215,12 @@ private:
         std::normal_distribution<double> normal(0.0, 1.0);
         auto view = std::make_shared<core::CycleView>();
         for (std::size_t i = 0; i < core::CycleView::kPoints; ++i) {
-            const double theta = 2.0 * std::numbers::pi * static_cast<double>(i) / core::CycleView::kPoints;
+            const double theta =
+                2.0 * std::numbers::pi * static_cast<double>(i) / core::CycleView::kPoints;
             double rest = 2e-6 * normal(m_random);
             for (const core::HarmonicReading& harmonic : reading.harmonics) {
-                rest += harmonic.ratio * std::sin(harmonic.order * theta + harmonic.phaseDeg * std::numbers::pi / 180.0);
+                rest += harmonic.ratio * std::sin(harmonic.order * theta +
+                                                  harmonic.phaseDeg * std::numbers::pi / 180.0);
             }
             view->residual[i] = static_cast<float>(rest);
             view->cycle[i] = static_cast<float>(std::sin(theta) + rest);

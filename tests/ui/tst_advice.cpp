@@ -1,8 +1,9 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/advice.h"
+
 #include <QTest>
 
 #include "tests/support/fake_frames.h"
-#include "ui/advice.h"
 
 namespace sinewright::ui {
 
@@ -21,7 +22,8 @@ BenchState running()
 
 } // namespace
 
-class TestAdvice final : public QObject {
+class TestAdvice final : public QObject
+{
     Q_OBJECT
 private slots:
     void init() { QTest::failOnWarning(QRegularExpression(u".*"_s)); }

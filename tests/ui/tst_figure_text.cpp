@@ -1,15 +1,16 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/figure_text.h"
+
 #include <QTest>
 
 #include <limits>
-
-#include "ui/figure_text.h"
 
 namespace sinewright::ui {
 
 using namespace Qt::StringLiterals;
 
-class TestFigureText final : public QObject {
+class TestFigureText final : public QObject
+{
     Q_OBJECT
 private slots:
     void init()
@@ -26,7 +27,8 @@ private slots:
         QTest::newRow("trailing zero stays") << 0.0011 << 3 << u"0.110"_s;
         QTest::newRow("two digits of a quick reading") << 0.00114 << 2 << u"0.11"_s;
         QTest::newRow("above one percent") << 0.01234 << 3 << u"1.23"_s;
-        QTest::newRow("rounding up to the next decade keeps the digits") << 0.009996 << 3 << u"1.00"_s;
+        QTest::newRow("rounding up to the next decade keeps the digits")
+            << 0.009996 << 3 << u"1.00"_s;
         QTest::newRow("hundred") << 1.0 << 3 << u"100"_s;
         QTest::newRow("more than hundred") << 1.234 << 2 << u"123"_s;
         QTest::newRow("very clean") << 3.21e-7 << 3 << u"0.0000321"_s;
@@ -52,7 +54,8 @@ private slots:
 
     void notFinite_isNeverPrinted()
     {
-        for (const double bad : {std::numeric_limits<double>::quiet_NaN(), std::numeric_limits<double>::infinity(),
+        for (const double bad : {std::numeric_limits<double>::quiet_NaN(),
+                                 std::numeric_limits<double>::infinity(),
                                  -std::numeric_limits<double>::infinity()}) {
             QCOMPARE(percentFigure(bad).value, QString(kAbsent));
             QCOMPARE(decibelFigure(bad, 1, u"dB"_s).value, QString(kAbsent));

@@ -1,16 +1,18 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/figures_model.h"
+
 #include <QAbstractItemModelTester>
 #include <QSignalSpy>
 #include <QTest>
 
 #include "tests/support/fake_frames.h"
-#include "ui/figures_model.h"
 
 namespace sinewright::ui {
 
 using namespace Qt::StringLiterals;
 
-class TestFiguresModel final : public QObject {
+class TestFiguresModel final : public QObject
+{
     Q_OBJECT
 private slots:
     void init() { QTest::failOnWarning(QRegularExpression(u".*"_s)); }
@@ -18,7 +20,8 @@ private slots:
     void table_isAValidModelThroughItsLife()
     {
         FiguresModel model;
-        const QAbstractItemModelTester tester(&model, QAbstractItemModelTester::FailureReportingMode::QtTest);
+        const QAbstractItemModelTester tester(
+            &model, QAbstractItemModelTester::FailureReportingMode::QtTest);
         tests::FakeBench bench;
         model.setFrame(bench.next(2.4).get());
         model.setFrame(bench.next(2.5).get());

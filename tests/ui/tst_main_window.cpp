@@ -1,4 +1,9 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/arms_length_view.h"
+#include "ui/main_window.h"
+#include "ui/plot.h"
+#include "ui/trimmer.h"
+
 #include <qcustomplot.h>
 
 #include <QAbstractSpinBox>
@@ -12,10 +17,6 @@
 #include <QWheelEvent>
 
 #include "tests/support/fake_frames.h"
-#include "ui/arms_length_view.h"
-#include "ui/main_window.h"
-#include "ui/plot.h"
-#include "ui/trimmer.h"
 
 namespace sinewright::ui {
 
@@ -36,7 +37,8 @@ BenchState demoState()
 }
 
 /// A window with a feed that the test fills.
-struct Bench {
+struct Bench
+{
     tests::FakeBench fake;
     std::shared_ptr<const core::Frame> frame;
     int polls = 0;
@@ -47,7 +49,8 @@ struct Bench {
 
     Bench()
     {
-        window.setSources({demoState().source, {SourceKind::Card, u"card:line in"_s, u"Line in"_s, 0.0, 1}});
+        window.setSources(
+            {demoState().source, {SourceKind::Card, u"card:line in"_s, u"Line in"_s, 0.0, 1}});
         window.setBenchState(demoState());
         window.resize(1280, 800);
     }
@@ -67,7 +70,7 @@ struct Bench {
         return QTest::qWaitFor([&] { return polls >= before + 3; });
     }
 
-    template<typename Type>
+    template <typename Type>
     [[nodiscard]] Type* part(const QString& name) const
     {
         return window.findChild<Type*>(name);
@@ -86,7 +89,8 @@ void letPass(int ms)
 
 } // namespace
 
-class TestMainWindow final : public QObject {
+class TestMainWindow final : public QObject
+{
     Q_OBJECT
 private slots:
     void init() { QTest::failOnWarning(QRegularExpression(u"^(?!This plugin).*"_s)); }
@@ -96,8 +100,11 @@ private slots:
         Bench bench;
         QVERIFY(bench.open());
         const QSignalSpy changed(&bench.window, &MainWindow::viewSettingsChanged);
-        const std::pair<Qt::Key, Page> keys[] = {{Qt::Key_1, Page::HookUp}, {Qt::Key_3, Page::WarmUp}, {Qt::Key_4, Page::Network},
-                                                 {Qt::Key_5, Page::Record}, {Qt::Key_2, Page::Trim}};
+        const std::pair<Qt::Key, Page> keys[] = {{Qt::Key_1, Page::HookUp},
+                                                 {Qt::Key_3, Page::WarmUp},
+                                                 {Qt::Key_4, Page::Network},
+                                                 {Qt::Key_5, Page::Record},
+                                                 {Qt::Key_2, Page::Trim}};
         for (const auto& [key, page] : keys) {
             QTest::keyClick(&bench.window, key, Qt::ControlModifier);
             QCOMPARE(bench.window.viewSettings().page, page);
@@ -165,10 +172,16 @@ private slots:
         QVERIFY(bench.open());
         auto* trimmer = bench.part<Trimmer>(u"trimmer"_s);
         QVERIFY(trimmer->isVisible());
-        QTRY_VERIFY(trimmer->hasFocus()); // Trim is the page at the start: the hand is on the trimmer at once
+        QTRY_VERIFY(
+            trimmer
+                ->hasFocus()); // Trim is the page at the start: the hand is on the trimmer at once
         QSignalSpy moved(&bench.window, &MainWindow::trimmerMoved);
-        const std::pair<Qt::Key, double> keys[] = {{Qt::Key_Up, 355.2}, {Qt::Key_Down, 355.0}, {Qt::Key_PageUp, 360.0},
-                                                   {Qt::Key_PageDown, 355.0}, {Qt::Key_End, 480.0}, {Qt::Key_Home, 226.0}};
+        const std::pair<Qt::Key, double> keys[] = {{Qt::Key_Up, 355.2},
+                                                   {Qt::Key_Down, 355.0},
+                                                   {Qt::Key_PageUp, 360.0},
+                                                   {Qt::Key_PageDown, 355.0},
+                                                   {Qt::Key_End, 480.0},
+                                                   {Qt::Key_Home, 226.0}};
         for (const auto& [key, ohm] : keys) {
             QTest::keyClick(trimmer, key);
             QVERIFY(!moved.isEmpty());
@@ -185,7 +198,14 @@ private slots:
         auto* trimmer = bench.part<Trimmer>(u"trimmer"_s);
         QSignalSpy moved(&bench.window, &MainWindow::trimmerMoved);
         const QPointF middle(trimmer->width() / 2.0, 10.0);
-        QWheelEvent wheel(middle, trimmer->mapToGlobal(middle), {}, QPoint(0, 120), Qt::NoButton, Qt::NoModifier, Qt::NoScrollPhase, false);
+        QWheelEvent wheel(middle,
+                          trimmer->mapToGlobal(middle),
+                          {},
+                          QPoint(0, 120),
+                          Qt::NoButton,
+                          Qt::NoModifier,
+                          Qt::NoScrollPhase,
+                          false);
         QCoreApplication::sendEvent(trimmer, &wheel);
         QCOMPARE_LE(std::abs(moved.takeLast().at(0).toDouble() - 356.0), 1e-9);
         QTest::mouseClick(trimmer, Qt::LeftButton, {}, QPoint(120, 12));
@@ -217,7 +237,8 @@ private slots:
         auto* great = bench.part<GreatFigure>(u"greatFigure"_s);
         QTRY_VERIFY(great->isVisible());
         QTRY_VERIFY(great->figure().value.startsWith(u"0."_s));
-        QTRY_COMPARE_LE(std::abs(great->digitHeight() - bench.window.height() / 3.0), 4.0); // whole pixels of type
+        QTRY_COMPARE_LE(std::abs(great->digitHeight() - bench.window.height() / 3.0),
+                        4.0); // whole pixels of type
         QVERIFY(!bench.part<QWidget>(u"figures"_s)->isVisible());
         QVERIFY(!bench.part<QWidget>(u"rail"_s)->isVisible());
         QTest::keyClick(&bench.window, Qt::Key_Escape);
@@ -296,7 +317,8 @@ private slots:
         Bench bench;
         QVERIFY(bench.open());
         QVERIFY(bench.give(bench.fake.next(2.5)));
-        auto* trend = bench.window.findChild<Trimmer*>()->parentWidget()->findChild<Plot*>(u"trend"_s);
+        auto* trend =
+            bench.window.findChild<Trimmer*>()->parentWidget()->findChild<Plot*>(u"trend"_s);
         QCOMPARE_GT(trend->drawCount(), 0);
         bench.window.hide();
         const int draws = trend->drawCount();
@@ -312,7 +334,8 @@ private slots:
         Bench bench;
         QVERIFY(bench.open());
         QVERIFY(bench.give(bench.fake.next(2.5)));
-        auto* trend = bench.window.findChild<Trimmer*>()->parentWidget()->findChild<Plot*>(u"trend"_s);
+        auto* trend =
+            bench.window.findChild<Trimmer*>()->parentWidget()->findChild<Plot*>(u"trend"_s);
         QTest::keyClick(&bench.window, Qt::Key_4, Qt::ControlModifier);
         const int draws = trend->drawCount();
         QVERIFY(bench.give(bench.fake.next(2.5)));
@@ -326,7 +349,8 @@ private slots:
         Bench bench;
         QVERIFY(bench.open());
         QVERIFY(bench.give(bench.fake.next(2.5)));
-        auto* trend = bench.window.findChild<Trimmer*>()->parentWidget()->findChild<Plot*>(u"trend"_s);
+        auto* trend =
+            bench.window.findChild<Trimmer*>()->parentWidget()->findChild<Plot*>(u"trend"_s);
         const int draws = trend->drawCount();
         QVERIFY(bench.give(bench.frame));
         QCOMPARE(trend->drawCount(), draws);
@@ -382,10 +406,13 @@ private slots:
         QVERIFY(bench.open());
         core::MeasureSettings got;
         int count = 0;
-        connect(&bench.window, &MainWindow::measureSettingsChosen, this, [&](const core::MeasureSettings& settings) {
-            got = settings;
-            ++count;
-        });
+        connect(&bench.window,
+                &MainWindow::measureSettingsChosen,
+                this,
+                [&](const core::MeasureSettings& settings) {
+                    got = settings;
+                    ++count;
+                });
         bench.part<QDoubleSpinBox>(u"fullScale"_s)->setValue(4.0);
         QCOMPARE(count, 1);
         QCOMPARE(*got.fullScaleVrms, 4.0);
@@ -421,12 +448,16 @@ private slots:
         QVERIFY(bench.open());
         int seen = 0;
         for (const QWidget* widget : bench.window.findChildren<QWidget*>()) {
-            const bool isControl = qobject_cast<const QAbstractButton*>(widget) || qobject_cast<const QComboBox*>(widget) ||
-                                   qobject_cast<const QAbstractSpinBox*>(widget) || qobject_cast<const QSlider*>(widget);
+            const bool isControl = qobject_cast<const QAbstractButton*>(widget) ||
+                                   qobject_cast<const QComboBox*>(widget) ||
+                                   qobject_cast<const QAbstractSpinBox*>(widget) ||
+                                   qobject_cast<const QSlider*>(widget);
             if (isControl && widget->isVisibleTo(&bench.window)) {
                 ++seen;
                 const auto* button = qobject_cast<const QAbstractButton*>(widget);
-                QVERIFY2(!widget->accessibleName().isEmpty() || (button && !button->text().isEmpty()), widget->metaObject()->className());
+                QVERIFY2(!widget->accessibleName().isEmpty() ||
+                             (button && !button->text().isEmpty()),
+                         widget->metaObject()->className());
                 QVERIFY2(!widget->toolTip().isEmpty(), widget->metaObject()->className());
             }
             if (qobject_cast<const QCustomPlot*>(widget)) {
@@ -442,8 +473,15 @@ private slots:
         QVERIFY(bench.open());
         bench.window.resize(1024, 640);
         QTRY_COMPARE(bench.window.size(), QSize(1024, 640));
-        for (const QString& name : {u"trend"_s, u"spectrum"_s, u"harmonics"_s, u"residual"_s, u"figures"_s, u"levelMeter"_s, u"trimmer"_s}) {
-            const auto* part = bench.window.findChild<Trimmer*>()->parentWidget()->findChild<QWidget*>(name);
+        for (const QString& name : {u"trend"_s,
+                                    u"spectrum"_s,
+                                    u"harmonics"_s,
+                                    u"residual"_s,
+                                    u"figures"_s,
+                                    u"levelMeter"_s,
+                                    u"trimmer"_s}) {
+            const auto* part =
+                bench.window.findChild<Trimmer*>()->parentWidget()->findChild<QWidget*>(name);
             if (part == nullptr) {
                 part = bench.part<QWidget>(name);
             }

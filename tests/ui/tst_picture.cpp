@@ -1,10 +1,11 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/bars_plot.h"
+#include "ui/picture.h"
+
 #include <QLabel>
 #include <QTest>
 
 #include "tests/support/fake_frames.h"
-#include "ui/bars_plot.h"
-#include "ui/picture.h"
 
 namespace sinewright::ui {
 
@@ -24,7 +25,8 @@ const QDateTime kWhen(QDate(2031, 2, 3), QTime(14, 15, 16), Qt::OffsetFromUTC, 3
 
 } // namespace
 
-class TestPicture final : public QObject {
+class TestPicture final : public QObject
+{
     Q_OBJECT
 private slots:
     void init()
@@ -84,7 +86,10 @@ private slots:
         int odd = 0;
         for (int y = 0; y + 1 < 2 * 240; y += 2) {
             for (int x = 0; x + 1 < twice.width(); x += 2) {
-                odd += twice.pixel(x, y) != twice.pixel(x + 1, y) || twice.pixel(x, y) != twice.pixel(x, y + 1) ? 1 : 0;
+                odd += twice.pixel(x, y) != twice.pixel(x + 1, y) ||
+                               twice.pixel(x, y) != twice.pixel(x, y + 1)
+                           ? 1
+                           : 0;
             }
         }
         QCOMPARE_GT(odd, 200);

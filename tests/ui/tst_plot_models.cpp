@@ -1,11 +1,4 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
-#include <QSignalSpy>
-#include <QTest>
-
-#include <cmath>
-#include <limits>
-
-#include "tests/support/fake_frames.h"
 #include "ui/bars_model.h"
 #include "ui/cycle_model.h"
 #include "ui/level_meter.h"
@@ -14,6 +7,14 @@
 #include "ui/reading_choice.h"
 #include "ui/spectrum_model.h"
 #include "ui/trend_model.h"
+
+#include <QSignalSpy>
+#include <QTest>
+
+#include <cmath>
+#include <limits>
+
+#include "tests/support/fake_frames.h"
 
 namespace sinewright::ui {
 
@@ -49,7 +50,8 @@ bool holds(const std::vector<QPointF>& points, double x, double y)
 
 } // namespace
 
-class TestPlotModels final : public QObject {
+class TestPlotModels final : public QObject
+{
     Q_OBJECT
 private slots:
     void init() { QTest::failOnWarning(QRegularExpression(u".*"_s)); }
@@ -76,7 +78,10 @@ private slots:
 
     void logRange_holdsTheDataAndADecadeAtLeast()
     {
-        for (const auto& [low, high] : {std::pair(0.1, 0.12), std::pair(0.1, 5.0), std::pair(3e-5, 30.0), std::pair(1.0, 1.0)}) {
+        for (const auto& [low, high] : {std::pair(0.1, 0.12),
+                                        std::pair(0.1, 5.0),
+                                        std::pair(3e-5, 30.0),
+                                        std::pair(1.0, 1.0)}) {
             const AxisRange range = logRange(low, high, {});
             QVERIFY(range.low < low && range.high > high);
             QCOMPARE_GE(range.high / range.low, 10.0 * (1.0 - 1e-9));
@@ -99,8 +104,8 @@ private slots:
 
     void columns_keepExtremesAndHoles()
     {
-        const std::vector<QPointF> points{{0.1, 5.0}, {0.2, 9.0}, {0.3, 1.0}, {0.9, 4.0},
-                                          {1.5, kNan}, {2.2, 3.0}, {2.3, 3.5}};
+        const std::vector<QPointF> points{
+            {0.1, 5.0}, {0.2, 9.0}, {0.3, 1.0}, {0.9, 4.0}, {1.5, kNan}, {2.2, 3.0}, {2.3, 3.5}};
         const std::vector<QPointF> reduced = reduceToColumns(points, 1.0);
         QCOMPARE(reduced.size(), std::size_t{5});
         QCOMPARE(reduced[0], QPointF(0.2, 9.0));
@@ -113,7 +118,8 @@ private slots:
     void spectrum_keepsEveryLineHoweverManyBinsAColumnHas()
     {
         // Single bins at either end of the axis and in the crowded top octave, over 300 columns for 24000 bins.
-        const std::vector<std::pair<std::size_t, float>> lines{{25, -60.0F}, {9000, -70.0F}, {9003, -75.0F}, {20011, -80.0F}};
+        const std::vector<std::pair<std::size_t, float>> lines{
+            {25, -60.0F}, {9000, -70.0F}, {9003, -75.0F}, {20011, -80.0F}};
         SpectrumModel model;
         model.setColumns(300);
         model.setFrame(frameWithLines(lines));
@@ -152,16 +158,21 @@ private slots:
         model.setUnit(LevelUnit::Dbfs);
         QCOMPARE(model.stems().front().levelDb, *frame->quick.levelDbfs);
         // The fundamental's line itself moves along with the unit.
-        const auto highest = std::max_element(model.highest().begin(), model.highest().end(),
-                                              [](const QPointF& a, const QPointF& b) { return a.y() < b.y(); });
-        QCOMPARE_LE(std::abs(highest->y() - *frame->quick.levelDbfs), 1.5); // half a bin off in the invented line
+        const auto highest =
+            std::max_element(model.highest().begin(),
+                             model.highest().end(),
+                             [](const QPointF& a, const QPointF& b) { return a.y() < b.y(); });
+        QCOMPARE_LE(std::abs(highest->y() - *frame->quick.levelDbfs),
+                    1.5); // half a bin off in the invented line
     }
 
     void trend_countsBackFromNowAndPartsAtGapsAndHoles()
     {
         auto trend = std::make_shared<core::TrendSnapshot>();
-        trend->points = {{100.0, 0.001, 0.0011, -6.0, false}, {101.0, 0.001, 0.0011, -6.0, false},
-                         {102.0, std::nullopt, std::nullopt, std::nullopt, false}, {103.0, 0.002, 0.0021, -5.0, false},
+        trend->points = {{100.0, 0.001, 0.0011, -6.0, false},
+                         {101.0, 0.001, 0.0011, -6.0, false},
+                         {102.0, std::nullopt, std::nullopt, std::nullopt, false},
+                         {103.0, 0.002, 0.0021, -5.0, false},
                          {104.0, 0.002, 0.0021, -5.0, true}};
         trend->best = core::BestReading{90.0, 0.0009, 0.001, -6.2, std::nullopt, 1000.0};
         auto frame = std::make_shared<core::Frame>();
@@ -183,7 +194,9 @@ private slots:
     {
         auto frame = std::make_shared<core::Frame>();
         frame->quick.status = core::ReadingStatus::Ok;
-        frame->quick.harmonics = {{2, 2000.0, 0.001, 0.0, true}, {3, 3000.0, 0.0, 0.0, true}, {4, 24000.0, 1e-8, 0.0, false}};
+        frame->quick.harmonics = {{2, 2000.0, 0.001, 0.0, true},
+                                  {3, 3000.0, 0.0, 0.0, true},
+                                  {4, 24000.0, 1e-8, 0.0, false}};
         BarsModel model;
         model.setFrame(frame);
         QCOMPARE(model.bars().size(), std::size_t{3});

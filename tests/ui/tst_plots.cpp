@@ -1,14 +1,15 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/bars_plot.h"
+#include "ui/cycle_plot.h"
+#include "ui/spectrum_plot.h"
+#include "ui/trend_plot.h"
+
 #include <QImage>
 #include <QTest>
 
 #include <cmath>
 
 #include "tests/support/fake_frames.h"
-#include "ui/bars_plot.h"
-#include "ui/cycle_plot.h"
-#include "ui/spectrum_plot.h"
-#include "ui/trend_plot.h"
 
 namespace sinewright::ui {
 
@@ -22,7 +23,7 @@ const Theme& paper()
 }
 
 /// Draws the plot now, at a fixed size, and returns its pixels.
-template<typename PlotType>
+template <typename PlotType>
 QImage pictureOf(PlotType& plot)
 {
     plot.replot(QCustomPlot::rpImmediateRefresh);
@@ -43,7 +44,9 @@ int topRow(const QImage& image, const QRect& inside, int column, const QColor& c
 bool isClose(const QColor& a, const QColor& b)
 {
     constexpr int kTolerance = 60; // antialiased edges
-    return std::abs(a.red() - b.red()) + std::abs(a.green() - b.green()) + std::abs(a.blue() - b.blue()) < kTolerance;
+    return std::abs(a.red() - b.red()) + std::abs(a.green() - b.green()) +
+               std::abs(a.blue() - b.blue()) <
+           kTolerance;
 }
 
 bool columnHas(const QImage& image, const QRect& inside, int column, const QColor& colour)
@@ -56,7 +59,7 @@ bool columnHas(const QImage& image, const QRect& inside, int column, const QColo
     return false;
 }
 
-template<typename PlotType>
+template <typename PlotType>
 void prepare(PlotType& plot, QSize size)
 {
     plot.resize(size);
@@ -66,7 +69,8 @@ void prepare(PlotType& plot, QSize size)
 
 } // namespace
 
-class TestPlots final : public QObject {
+class TestPlots final : public QObject
+{
     Q_OBJECT
 private slots:
     void init() { QTest::failOnWarning(QRegularExpression(u"^(?!This plugin).*"_s)); }
@@ -93,7 +97,8 @@ private slots:
         const QRect inside = plot.axisRect()->rect();
         const AxisRange range = plot.model().range();
         // The axis is linear in dB: its low end is the bottom row, its high end the inside's height above that.
-        const double expected = inside.bottom() - inside.height() * (dbc - range.low) / range.span();
+        const double expected =
+            inside.bottom() - inside.height() * (dbc - range.low) / range.span();
         const int column = static_cast<int>(std::lround(plot.xAxis->coordToPixel(2.0)));
         const int actual = topRow(image, inside, column, paper().slate);
         QVERIFY(actual >= 0);
@@ -109,7 +114,8 @@ private slots:
         prepare(plot, QSize(300, 320));
         plot.setFrame(frame);
         const QImage image = pictureOf(plot);
-        const int row = static_cast<int>(plot.yAxis->coordToPixel(-90.0)); // between two lines of the grid
+        const int row =
+            static_cast<int>(plot.yAxis->coordToPixel(-90.0)); // between two lines of the grid
         const int solid = static_cast<int>(std::lround(plot.xAxis->coordToPixel(2.0)));
         const int hollow = static_cast<int>(std::lround(plot.xAxis->coordToPixel(3.0)));
         QCOMPARE(image.pixelColor(solid, row), paper().slate);
@@ -141,11 +147,16 @@ private slots:
         for (int column = inside.left() + 2; column < inside.right() - 8; ++column) {
             const double ago = -plot.xAxis->pixelToCoord(column);
             if (ago > 61.0 && ago < 119.0) {
-                QVERIFY2(!columnHas(image, inside, column, paper().copper), qPrintable(QString::number(column)));
-            } else if (ago < 59.0 || ago > 121.0) {
-                QVERIFY2(isClose(image.pixelColor(column, static_cast<int>(std::round(expectedRow))), paper().copper) ||
-                             isClose(image.pixelColor(column, static_cast<int>(std::round(expectedRow)) - 1), paper().copper),
+                QVERIFY2(!columnHas(image, inside, column, paper().copper),
                          qPrintable(QString::number(column)));
+            } else if (ago < 59.0 || ago > 121.0) {
+                QVERIFY2(
+                    isClose(image.pixelColor(column, static_cast<int>(std::round(expectedRow))),
+                            paper().copper) ||
+                        isClose(
+                            image.pixelColor(column, static_cast<int>(std::round(expectedRow)) - 1),
+                            paper().copper),
+                    qPrintable(QString::number(column)));
             }
         }
     }
@@ -162,7 +173,8 @@ private slots:
         // 60 s of the axis are still without readings: there the rule stands alone; it is dashed, so most, not all.
         int found = 0;
         int looked = 0;
-        for (int column = inside.left() + 2; column < plot.xAxis->coordToPixel(-122.0); ++column, ++looked) {
+        for (int column = inside.left() + 2; column < plot.xAxis->coordToPixel(-122.0);
+             ++column, ++looked) {
             found += columnHas(image, inside, column, paper().verdigris) ? 1 : 0;
         }
         QCOMPARE_GT(looked, 50);
@@ -182,10 +194,12 @@ private slots:
         // Log axis from its low end to half the sample rate.
         const AxisRange range = plot.model().frequencyRange();
         for (const int order : {2, 3}) {
-            const double share = std::log(order * *frame->quick.frequencyHz / range.low) / std::log(range.high / range.low);
+            const double share = std::log(order * *frame->quick.frequencyHz / range.low) /
+                                 std::log(range.high / range.low);
             const double column = inside.left() + inside.width() * share;
             const int left = static_cast<int>(std::floor(column)) - 1;
-            QVERIFY(columnHas(image, inside, left, paper().slate) || columnHas(image, inside, left + 1, paper().slate));
+            QVERIFY(columnHas(image, inside, left, paper().slate) ||
+                    columnHas(image, inside, left + 1, paper().slate));
             QVERIFY(!columnHas(image, inside, left - 9, paper().slate));
         }
     }
@@ -203,7 +217,8 @@ private slots:
         const QImage image = pictureOf(plot);
         const QRect inside = plot.axisRect()->rect();
         const double column = inside.left() + inside.width() * 0.25;
-        const double row = inside.top() + inside.height() * (plot.model().residualEnd() - 0.4) / (2.0 * plot.model().residualEnd());
+        const double row = inside.top() + inside.height() * (plot.model().residualEnd() - 0.4) /
+                                              (2.0 * plot.model().residualEnd());
         int highest = inside.bottom();
         int at = 0;
         for (int x = inside.left() + 2; x < inside.right() - 2; ++x) {
@@ -215,7 +230,8 @@ private slots:
             }
         }
         QCOMPARE_LE(std::abs(at - column), 1.5);
-        QCOMPARE_LE(std::abs(highest - row), 2.0); // the tip of a line 1.5 wide is cut by antialiasing
+        QCOMPARE_LE(std::abs(highest - row),
+                    2.0); // the tip of a line 1.5 wide is cut by antialiasing
     }
 
     void hiddenPlot_isNotDrawn()

@@ -1,15 +1,16 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/theme.h"
+
 #include <QFontInfo>
 #include <QFontMetricsF>
 #include <QTest>
-
-#include "ui/theme.h"
 
 namespace sinewright::ui {
 
 using namespace Qt::StringLiterals;
 
-class TestTheme final : public QObject {
+class TestTheme final : public QObject
+{
     Q_OBJECT
 private slots:
     void init() { QTest::failOnWarning(QRegularExpression(u".*"_s)); }
@@ -27,15 +28,22 @@ private slots:
     {
         QTest::addColumn<QColor>("text");
         QTest::addColumn<QColor>("ground");
-        for (const auto& [name, which] : {std::pair("paper", ThemeName::Paper), std::pair("dusk", ThemeName::Dusk)}) {
+        for (const auto& [name, which] :
+             {std::pair("paper", ThemeName::Paper), std::pair("dusk", ThemeName::Dusk)}) {
             const Theme& t = theme(which);
             const QPalette palette = paletteOf(t);
             const std::pair<const char*, QColor> texts[] = {
-                {"ink", t.ink}, {"soft ink", t.inkSoft}, {"copper", t.copper}, {"verdigris", t.verdigris},
-                {"slate", t.slate}, {"alert", t.alert}, {"placeholder", palette.color(QPalette::PlaceholderText)},
+                {"ink", t.ink},
+                {"soft ink", t.inkSoft},
+                {"copper", t.copper},
+                {"verdigris", t.verdigris},
+                {"slate", t.slate},
+                {"alert", t.alert},
+                {"placeholder", palette.color(QPalette::PlaceholderText)},
                 {"disabled", palette.color(QPalette::Disabled, QPalette::Text)}};
             for (const auto& [text, colour] : texts) {
-                for (const auto& [ground, behind] : {std::pair("page", t.page), std::pair("rail", t.rail)}) {
+                for (const auto& [ground, behind] :
+                     {std::pair("page", t.page), std::pair("rail", t.rail)}) {
                     QTest::addRow("%s: %s on %s", name, text, ground) << colour << behind;
                 }
             }

@@ -5,18 +5,21 @@
 //
 //     window_pictures FOLDER          pictures
 //     window_pictures --cost SECONDS  CPU time per second of 20 frames a second at 1280x800
+#include "ui/main_window.h"
+#include "ui/picture.h"
+
+#include <qcustomplot.h>
+
 #include <QApplication>
 #include <QDialog>
-#include <QElapsedTimer>
 #include <QDir>
+#include <QElapsedTimer>
 #include <QTest>
 
 #include <cstdio>
 #include <ctime>
 
 #include "tests/support/fake_frames.h"
-#include "ui/main_window.h"
-#include "ui/picture.h"
 
 namespace {
 
@@ -35,11 +38,13 @@ ui::BenchState demoState()
     return state;
 }
 
-class Studio final {
+class Studio final
+{
 public:
     explicit Studio(QDir folder) : m_folder(std::move(folder)), m_window([this] { return m_frame; })
     {
-        m_window.setSources({demoState().source, {ui::SourceKind::Card, u"card:line in"_s, u"Line in"_s, 0.0, 1}});
+        m_window.setSources(
+            {demoState().source, {ui::SourceKind::Card, u"card:line in"_s, u"Line in"_s, 0.0, 1}});
         m_window.setBenchState(demoState());
         m_window.show();
     }
@@ -64,7 +69,9 @@ public:
     void shoot(const QString& name, QWidget* subject = nullptr)
     {
         QTest::qWait(300);
-        (subject != nullptr ? subject : &m_window)->grab().save(m_folder.filePath(name + u".png"_s));
+        (subject != nullptr ? subject : &m_window)
+            ->grab()
+            .save(m_folder.filePath(name + u".png"_s));
     }
 
     void press(Qt::Key key)
@@ -99,7 +106,8 @@ void shootStates(Studio& studio, tests::FakeBench& bench)
     state.channels = 2;
     state.condition = Condition::Lost;
     state.framesLost = 4096;
-    state.message = u"The interface stopped delivering: check its cable; listening goes on by itself when it is back."_s;
+    state.message =
+        u"The interface stopped delivering: check its cable; listening goes on by itself when it is back."_s;
     auto frame = bench.trimFor(180.0);
     studio.show(frame, state);
     studio.shoot(u"lost"_s);
@@ -116,20 +124,24 @@ void shootStates(Studio& studio, tests::FakeBench& bench)
 void shootViews(Studio& studio, const std::shared_ptr<const core::Frame>& frame)
 {
     studio.show(frame, demoState());
-    const std::pair<QString, ui::ThemeName> themes[] = {{u"paper"_s, ui::ThemeName::Paper}, {u"dusk"_s, ui::ThemeName::Dusk}};
+    const std::pair<QString, ui::ThemeName> themes[] = {{u"paper"_s, ui::ThemeName::Paper},
+                                                        {u"dusk"_s, ui::ThemeName::Dusk}};
     for (const auto& [name, theme] : themes) {
         for (const QSize size : {QSize(1280, 800), QSize(1920, 1080), QSize(1024, 640)}) {
             studio.view(ui::Page::Trim, theme, size);
             studio.shoot(u"trim-%1-%2x%3"_s.arg(name).arg(size.width()).arg(size.height()));
         }
-        const std::pair<QString, ui::Page> pages[] = {{u"hook-up"_s, ui::Page::HookUp}, {u"warm-up"_s, ui::Page::WarmUp},
-                                                      {u"network"_s, ui::Page::Network}, {u"record"_s, ui::Page::Record}};
+        const std::pair<QString, ui::Page> pages[] = {{u"hook-up"_s, ui::Page::HookUp},
+                                                      {u"warm-up"_s, ui::Page::WarmUp},
+                                                      {u"network"_s, ui::Page::Network},
+                                                      {u"record"_s, ui::Page::Record}};
         for (const auto& [word, page] : pages) {
             studio.view(page, theme, QSize(1280, 800));
             studio.shoot(word + u'-' + name);
         }
         studio.view(ui::Page::Trim, theme, QSize(1280, 800));
-        for (const auto& [word, key] : {std::pair(u"keys-"_s, Qt::Key_F1), std::pair(u"figures-"_s, Qt::Key_T)}) {
+        for (const auto& [word, key] :
+             {std::pair(u"keys-"_s, Qt::Key_F1), std::pair(u"figures-"_s, Qt::Key_T)}) {
             studio.press(key);
             if (auto* dialog = studio.window().findChild<QDialog*>()) {
                 studio.shoot(word + name, dialog);
@@ -167,7 +179,16 @@ void measureCost(double seconds)
     span.start();
     QTest::qWait(static_cast<int>(seconds * 1000.0));
     const double cpu = static_cast<double>(std::clock() - before) / CLOCKS_PER_SEC;
-    std::printf("drawing at %dx%d: %.1f %% of one core\n", window.width(), window.height(),
+    for (const QCustomPlot* plot : window.findChildren<QCustomPlot*>()) {
+        if (plot->isVisible()) {
+            std::printf("%-10s %5.2f ms a replot\n",
+                        qPrintable(plot->objectName()),
+                        plot->replotTime(true));
+        }
+    }
+    std::printf("drawing at %dx%d: %.1f %% of one core\n",
+                window.width(),
+                window.height(),
                 100.0 * cpu / (static_cast<double>(span.elapsed()) / 1000.0));
 }
 
@@ -188,7 +209,10 @@ int main(int argc, char** argv)
     shootStates(studio, bench);
     const auto frame = bench.trimFor(180.0);
     shootViews(studio, frame);
-    ui::composePicture(&studio.window(), ui::captionFor(u"Trim"_s, frame.get(), demoState(), {}, QDateTime::currentDateTime()), 2)
+    ui::composePicture(
+        &studio.window(),
+        ui::captionFor(u"Trim"_s, frame.get(), demoState(), {}, QDateTime::currentDateTime()),
+        2)
         .save(folder.filePath(u"picture-2x.png"_s));
     return 0;
 }
