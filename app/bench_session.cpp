@@ -3,8 +3,6 @@
 
 #include "app/device_worker.h"
 
-#include <QMetaObject>
-
 #include <algorithm>
 #include <utility>
 
@@ -14,44 +12,48 @@ using namespace Qt::StringLiterals;
 
 BenchSession::BenchSession(SourceFactory makeSource, CardLister listCards, QObject* parent)
     : QObject(parent)
-    , m_worker(
-          new DeviceWorker(std::move(makeSource), std::move(listCards), m_trimmer, m_newestSerial))
+    , m_device(std::make_shared<DeviceLink>())
+    , m_worker(std::make_unique<DeviceWorker>(
+          std::move(makeSource), std::move(listCards), m_trimmer, m_device))
 {
-    m_device.setObjectName(u"dev"_s);
-    m_worker->moveToThread(&m_device);
-    connect(&m_device, &QThread::finished, m_worker, &QObject::deleteLater);
-    connect(m_worker, &DeviceWorker::statusChanged, this, &BenchSession::noteStatus);
-    connect(m_worker, &DeviceWorker::cardsListed, this, &BenchSession::cardsListed);
-    m_device.start();
+    m_thread.setObjectName(u"dev"_s);
+    m_worker->moveToThread(&m_thread);
+    connect(this, &BenchSession::orderGiven, m_worker.get(), &DeviceWorker::obey);
+    connect(this, &BenchSession::cardsWanted, m_worker.get(), &DeviceWorker::listCards);
+    connect(m_worker.get(), &DeviceWorker::statusChanged, this, &BenchSession::takeStatus);
+    connect(m_worker.get(), &DeviceWorker::cardsListed, this, &BenchSession::takeCards);
+    // QThread's own waiting is out of the thread sanitizer's sight.
+    connect(
+        &m_thread,
+        &QThread::finished,
+        &m_thread,
+        [device = m_device.get()] { device->ended.release(); },
+        Qt::DirectConnection);
+    m_thread.start();
 }
 
 BenchSession::~BenchSession()
 {
-    // An order that still waits is not worth opening a device for.
-    ++*m_newestSerial;
-    m_device.quit();
-    m_device.wait();
+    m_device->orders.put({.isLast = true});
+    emit orderGiven();
+    m_device->ended.acquire();
+    m_thread.wait();
 }
 
 void BenchSession::open(const SourceSpec& spec)
 {
-    const quint64 serial = ++*m_newestSerial;
+    ++m_newestSerial;
     m_link = std::make_shared<AnalysisLink>();
     m_frame.reset();
-    QMetaObject::invokeMethod(
-        m_worker,
-        [worker = m_worker,
-         order =
-             OpenOrder{.serial = serial, .source = spec, .settings = m_settings, .link = m_link}] {
-            worker->open(order);
-        },
-        Qt::QueuedConnection);
-    noteStatus(SessionStatus{.source = spec, .serial = serial});
+    m_device->orders.put(
+        {.serial = m_newestSerial, .source = spec, .settings = m_settings, .link = m_link});
+    emit orderGiven();
+    noteStatus({.source = spec, .serial = m_newestSerial});
 }
 
 void BenchSession::wantCards()
 {
-    QMetaObject::invokeMethod(m_worker, &DeviceWorker::listCards, Qt::QueuedConnection);
+    emit cardsWanted();
 }
 
 std::shared_ptr<const core::Frame> BenchSession::newestFrame()
@@ -79,13 +81,26 @@ void BenchSession::setTrimmer(double ohm)
         std::clamp(ohm, audio::kDemoTrimmerLowestOhm, audio::kDemoTrimmerHighestOhm));
 }
 
+void BenchSession::takeStatus()
+{
+    const auto status = m_device->statuses.take();
+    // One with another serial is of a source that was left since.
+    if (status && status->serial == m_newestSerial) {
+        noteStatus(*status);
+    }
+}
+
 void BenchSession::noteStatus(const SessionStatus& status)
 {
-    if (status.serial != m_newestSerial->load()) {
-        return; // of a source that was left since
-    }
     m_status = status;
     emit statusChanged(status);
+}
+
+void BenchSession::takeCards()
+{
+    if (const auto cards = m_device->cards.take()) {
+        emit cardsListed(*cards);
+    }
 }
 
 } // namespace sinewright::app

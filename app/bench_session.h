@@ -10,13 +10,13 @@
 #include <QObject>
 #include <QThread>
 
-#include <atomic>
 #include <memory>
 #include <vector>
 
 namespace sinewright::app {
 
 class DeviceWorker;
+struct DeviceLink;
 
 /// One session at the bench: a source, its analysis, and the newest frame of it.
 ///
@@ -61,22 +61,28 @@ signals:
     void statusChanged(const sinewright::app::SessionStatus& status);
     void cardsListed(const std::vector<sinewright::audio::CardInfo>& cards);
 
+    // To [dev]: look into the link.
+    void orderGiven();
+    void cardsWanted();
+
 private:
     void noteStatus(const SessionStatus& status);
+    void takeStatus();
+    void takeCards();
 
     // atomic: written [gui], read on the demo's thread
     std::shared_ptr<audio::DemoTrimmer> m_trimmer = std::make_shared<audio::DemoTrimmer>();
-    // atomic: written [gui], read [dev]
-    std::shared_ptr<std::atomic<quint64>> m_newestSerial =
-        std::make_shared<std::atomic<quint64>>(0);
+    // shared with [dev] through its own means
+    std::shared_ptr<DeviceLink> m_device;
     // shared with [dsp] through its own means; a new one for every source
     std::shared_ptr<AnalysisLink> m_link = std::make_shared<AnalysisLink>();
     // [gui] only
+    quint64 m_newestSerial = 0;
     SessionStatus m_status;
     core::MeasureSettings m_settings;
     std::shared_ptr<const core::Frame> m_frame;
-    DeviceWorker* m_worker; // lives on m_device, which deletes it when it ends
-    QThread m_device;
+    std::unique_ptr<DeviceWorker> m_worker; // lives on m_thread as long as that runs
+    QThread m_thread;
 };
 
 } // namespace sinewright::app

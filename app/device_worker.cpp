@@ -1,6 +1,8 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "app/device_worker.h"
 
+#include <QThread>
+
 #include <chrono>
 #include <cmath>
 #include <string>
@@ -39,27 +41,35 @@ Condition conditionOf(audio::SourceCondition condition)
 DeviceWorker::DeviceWorker(SourceFactory makeSource,
                            CardLister listCards,
                            std::shared_ptr<const audio::DemoTrimmer> trimmer,
-                           std::shared_ptr<const std::atomic<quint64>> newestSerial)
+                           std::shared_ptr<DeviceLink> link)
     : m_makeSource(std::move(makeSource))
     , m_listCards(std::move(listCards))
     , m_trimmer(std::move(trimmer))
-    , m_newestSerial(std::move(newestSerial))
+    , m_link(std::move(link))
     , m_tending(this) // a child moves along to the worker's thread
 {
     m_tending.setInterval(kTendEvery);
     connect(&m_tending, &QTimer::timeout, this, &DeviceWorker::tend);
 }
 
-DeviceWorker::~DeviceWorker()
+DeviceWorker::~DeviceWorker() = default;
+
+void DeviceWorker::obey()
 {
-    close();
+    const auto order = m_link->orders.take();
+    if (!order) {
+        return;
+    }
+    if (order->isLast) {
+        close();
+        QThread::currentThread()->quit();
+        return;
+    }
+    open(*order);
 }
 
 void DeviceWorker::open(const OpenOrder& order)
 {
-    if (order.serial != m_newestSerial->load()) {
-        return;
-    }
     close();
     m_status = SessionStatus{.source = order.source, .serial = order.serial};
     if (const auto up = bringUp(order); !up) {
@@ -127,13 +137,15 @@ void DeviceWorker::publish(const SessionStatus& status)
         return;
     }
     m_status = status;
-    emit statusChanged(status);
+    m_link->statuses.put(status);
+    emit statusChanged();
 }
 
 void DeviceWorker::listCards()
 {
-    const auto cards = m_listCards();
-    emit cardsListed(cards ? *cards : std::vector<audio::CardInfo>());
+    auto cards = m_listCards();
+    m_link->cards.put(cards ? std::move(*cards) : std::vector<audio::CardInfo>());
+    emit cardsListed();
 }
 
 } // namespace sinewright::app
