@@ -55,6 +55,7 @@ PictureRun::PictureRun(const PictureOptions& options, const QString& settingsFil
     view.pictureScale = options.scale;
     m_settings.setView(view);
     connect(&m_looking, &QTimer::timeout, this, &PictureRun::look);
+    connect(&m_holding, &QTimer::timeout, &m_loop, &QEventLoop::quit);
 }
 
 Outcome PictureRun::run()
@@ -86,7 +87,7 @@ void PictureRun::look()
         m_looking.stop();
         m_loadTo = loadNow();
         m_held = frame;
-        QTimer::singleShot(kHoldFor, &m_loop, &QEventLoop::quit);
+        m_holding.start(kHoldFor);
     }
 }
 

@@ -50,10 +50,11 @@ private:
     BenchSession m_session;
     Settings m_settings;
     std::shared_ptr<const core::Frame> m_held; ///< what the picture will show, once it is chosen
-    ui::MainWindow m_window; // asks for m_held
+    ui::MainWindow m_window;                   // asks for m_held
     WindowWiring m_wiring;
     QEventLoop m_loop;
     QTimer m_looking;
+    QTimer m_holding;
     LoadMark m_loadFrom;
     LoadMark m_loadTo;
     bool m_isWarm = false;
