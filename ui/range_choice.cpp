@@ -106,8 +106,7 @@ std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points, double 
     return result;
 }
 
-std::vector<QPointF>
-dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off)
+std::vector<QPointF> dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off)
 {
     std::vector<QPointF> result;
     result.reserve(points.size());

@@ -110,11 +110,12 @@ void TrendPlot::present()
 void TrendPlot::restyle()
 {
     const Theme& t = colours();
-    m_thd->setPen(QPen(t.copper, 2.0, Qt::SolidLine, Qt::RoundCap, Qt::RoundJoin));
+    m_thd->setPen(QPen(t.copper, 2.0, Qt::SolidLine, Qt::SquareCap));
     m_thdn->setPen(QPen(t.ink, 1.0));
     m_level->setPen(QPen(t.slate, 1.2));
     QPen level = m_level->pen();
-    level.setDashPattern({TrendModel::kDashOn / level.widthF(), TrendModel::kDashOff / level.widthF()});
+    level.setDashPattern(
+        {TrendModel::kDashOn / level.widthF(), TrendModel::kDashOff / level.widthF()});
     level.setCapStyle(Qt::FlatCap);
     QPen best(t.verdigris, 1.2);
     best.setDashPattern({8.0, 3.0});
