@@ -90,7 +90,7 @@ void FrameDisplay::poll()
 void FrameDisplay::takeLevel()
 {
     LevelMeter& meter = m_parts.sources->meter();
-    if (m_newest) {
+    if (m_newest && !isStale(m_bench)) {
         meter.feed(m_newest->peakFs, m_newest->rmsFs, isOverloaded(*m_newest), m_clock.elapsed());
         m_parts.bottom->setFramesLost(m_newest->framesLost);
     } else {

@@ -33,7 +33,6 @@ constexpr std::array kPageWords{"hook-up", "trim", "warm-up", "network", "record
 /// What the keys do, and who tells whom.
 class MainWindow::Impl final : public QObject
 {
-    Q_OBJECT
 public:
     Impl(MainWindow& window, FrameFeed feed);
 
@@ -97,7 +96,8 @@ void MainWindow::Impl::connectReadingActions()
 {
     connect(m_actions.freeze, &QAction::toggled, this, [this](bool isFrozen) {
         m_display.setFrozen(isFrozen);
-        m_window.showNotice(isFrozen ? tr("Frozen. Press F to go on.") : tr("Live again."));
+        m_window.showNotice(isFrozen ? MainWindow::tr("Frozen. Press F to go on.")
+                                     : MainWindow::tr("Live again."));
     });
     connect(m_actions.resetBest, &QAction::triggered, &m_window, &MainWindow::bestResetWanted);
     connect(m_actions.spectrumUnit, &QAction::triggered, this, &Impl::toggleSpectrumUnit);
@@ -200,8 +200,8 @@ void MainWindow::Impl::savePlot()
     const QWidget* pointed = m_window.childAt(m_window.mapFromGlobal(QCursor::pos()));
     const auto at = std::find(plots.begin(), plots.end(), pointed);
     if (at == plots.end()) {
-        m_window.showNotice(
-            tr("Point at a plot first: the picture is taken of the one under the pointer."));
+        m_window.showNotice(MainWindow::tr(
+            "Point at a plot first: the picture is taken of the one under the pointer."));
         return;
     }
     emit m_window.pictureWanted({*at, (*at)->plainName(), (*at)->accessibleName()});
@@ -211,9 +211,9 @@ void MainWindow::Impl::showKeys()
 {
     constexpr int kAfterSource = 2;
     QList<ActionGroup> groups = m_actions.groups();
-    groups.insert(
-        kAfterSource,
-        {tr("Virtual trimmer, while it has the focus"), m_parts.trim->trimmer().keyActions()});
+    groups.insert(kAfterSource,
+                  {MainWindow::tr("Virtual trimmer, while it has the focus"),
+                   m_parts.trim->trimmer().keyActions()});
     auto* dialog = new KeysDialog(groups, &m_window);
     dialog->show();
 }
@@ -311,5 +311,3 @@ void MainWindow::showEvent(QShowEvent* event)
 }
 
 } // namespace sinewright::ui
-
-#include "main_window.moc"
