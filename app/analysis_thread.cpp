@@ -48,7 +48,8 @@ void AnalysisThread::obey()
     if (const auto settings = m_link->settings.take()) {
         m_analyser.setSettings(*settings);
     }
-    if (const auto resets = m_link->bestResets.load(std::memory_order_relaxed); resets != m_bestResetsSeen) {
+    if (const auto resets = m_link->bestResets.load(std::memory_order_relaxed);
+        resets != m_bestResetsSeen) {
         m_bestResetsSeen = resets;
         m_analyser.resetBest();
     }

@@ -17,11 +17,12 @@
 namespace sinewright::app {
 
 /// What [gui] and [dsp] have in common while one source is analysed. Nobody waits here.
-struct AnalysisLink {
+struct AnalysisLink
+{
     Mailbox<std::shared_ptr<const core::Frame>> frames; ///< [dsp] to [gui]
     Mailbox<core::MeasureSettings> settings;            ///< [gui] to [dsp]
     std::atomic<std::uint32_t> bestResets{0};           ///< counted up by [gui], looked at by [dsp]
-    std::atomic<double> busyS{0.0};                     ///< [s] processor time of [dsp], written there
+    std::atomic<double> busyS{0.0}; ///< [s] processor time of [dsp], written there
 };
 
 /// [dsp] Takes blocks out of the ring, picks the channel, feeds the analyser, and posts the newest frame.
@@ -30,7 +31,8 @@ struct AnalysisLink {
 /// rounding to nearest), so that a stretch measured here and on the command line gives the same figures.
 ///
 /// @thread  made and destroyed on [dev]; the destructor joins, in some milliseconds.
-class AnalysisThread final {
+class AnalysisThread final
+{
 public:
     /// @param ring     outlives this; nobody pushes any more when this is destroyed, or what is pushed stays there.
     /// @param channel  1 .. ring.channels()

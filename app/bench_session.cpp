@@ -14,7 +14,8 @@ using namespace Qt::StringLiterals;
 
 BenchSession::BenchSession(SourceFactory makeSource, CardLister listCards, QObject* parent)
     : QObject(parent)
-    , m_worker(new DeviceWorker(std::move(makeSource), std::move(listCards), m_trimmer, m_newestSerial))
+    , m_worker(
+          new DeviceWorker(std::move(makeSource), std::move(listCards), m_trimmer, m_newestSerial))
 {
     m_device.setObjectName(u"dev"_s);
     m_worker->moveToThread(&m_device);
@@ -40,7 +41,8 @@ void BenchSession::open(const SourceSpec& spec)
     QMetaObject::invokeMethod(
         m_worker,
         [worker = m_worker,
-         order = OpenOrder{.serial = serial, .source = spec, .settings = m_settings, .link = m_link}] {
+         order =
+             OpenOrder{.serial = serial, .source = spec, .settings = m_settings, .link = m_link}] {
             worker->open(order);
         },
         Qt::QueuedConnection);
@@ -73,7 +75,8 @@ void BenchSession::resetBest()
 
 void BenchSession::setTrimmer(double ohm)
 {
-    m_trimmer->ohm.store(std::clamp(ohm, audio::kDemoTrimmerLowestOhm, audio::kDemoTrimmerHighestOhm));
+    m_trimmer->ohm.store(
+        std::clamp(ohm, audio::kDemoTrimmerLowestOhm, audio::kDemoTrimmerHighestOhm));
 }
 
 void BenchSession::noteStatus(const SessionStatus& status)

@@ -22,7 +22,8 @@ class DeviceWorker;
 ///
 /// [gui] All its functions are called there and return at once. The work is done on [dev] (the source) and [dsp] (the
 /// analysis); what happens rarely comes back as a signal, frames are asked for. Only the destructor waits.
-class BenchSession final : public QObject {
+class BenchSession final : public QObject
+{
     Q_OBJECT
 public:
     explicit BenchSession(SourceFactory makeSource = app::makeSource,
@@ -65,7 +66,8 @@ private:
     // atomic: written [gui], read on the demo's thread
     std::shared_ptr<audio::DemoTrimmer> m_trimmer = std::make_shared<audio::DemoTrimmer>();
     // atomic: written [gui], read [dev]
-    std::shared_ptr<std::atomic<quint64>> m_newestSerial = std::make_shared<std::atomic<quint64>>(0);
+    std::shared_ptr<std::atomic<quint64>> m_newestSerial =
+        std::make_shared<std::atomic<quint64>>(0);
     // shared with [dsp] through its own means; a new one for every source
     std::shared_ptr<AnalysisLink> m_link = std::make_shared<AnalysisLink>();
     // [gui] only

@@ -24,15 +24,15 @@ std::size_t framesOf(double seconds, core::SampleRate rate)
 }
 
 /// Collects blocks until there are enough in one piece.
-class Collector final {
+class Collector final
+{
 public:
     Collector(audio::SampleRing& ring, int channel, std::size_t settleFrames, std::size_t frames)
         : m_ring(ring)
         , m_channel(channel)
         , m_settleFrames(settleFrames)
         , m_frames(frames)
-    {
-    }
+    {}
 
     /// Takes what is in the ring; true when something was.
     bool takeWhatIsThere()
@@ -80,9 +80,10 @@ std::optional<CaptureFailure> collect(audio::Source& source, Collector& collecto
             lastSign = now;
         }
         if (collector.interruptions() >= kCaptureTries) {
-            return CaptureFailure{true,
-                                  "samples were lost in each of " + std::to_string(kCaptureTries) +
-                                      " tries; close what keeps the machine busy, or ask for fewer --seconds"};
+            return CaptureFailure{
+                true,
+                "samples were lost in each of " + std::to_string(kCaptureTries) +
+                    " tries; close what keeps the machine busy, or ask for fewer --seconds"};
         }
         if (now - lastSign > patience) {
             const std::string why = source.status().message;
@@ -99,7 +100,10 @@ std::optional<CaptureFailure> collect(audio::Source& source, Collector& collecto
 
 } // namespace
 
-void appendChannel(const std::vector<float>& interleaved, int channels, int channel, std::vector<double>& samples)
+void appendChannel(const std::vector<float>& interleaved,
+                   int channels,
+                   int channel,
+                   std::vector<double>& samples)
 {
     const auto stride = static_cast<std::size_t>(channels);
     samples.reserve(samples.size() + interleaved.size() / stride);
@@ -108,11 +112,14 @@ void appendChannel(const std::vector<float>& interleaved, int channels, int chan
     }
 }
 
-tl::expected<std::vector<double>, CaptureFailure>
-captureStretch(audio::Source& source, const audio::StreamFormat& format, int channel, double seconds)
+tl::expected<std::vector<double>, CaptureFailure> captureStretch(audio::Source& source,
+                                                                 const audio::StreamFormat& format,
+                                                                 int channel,
+                                                                 double seconds)
 {
     audio::SampleRing ring(format.channels, framesOf(kRingS, format.rate));
-    Collector collector(ring, channel, framesOf(kCaptureSettleS, format.rate), framesOf(seconds, format.rate));
+    Collector collector(
+        ring, channel, framesOf(kCaptureSettleS, format.rate), framesOf(seconds, format.rate));
     if (const auto started = source.start(ring); !started) {
         return tl::unexpected(CaptureFailure{false, started.error().detail});
     }

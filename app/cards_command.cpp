@@ -1,7 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "app/commands.h"
 #include "app/json_writer.h"
-
 #include "audio/card.h"
 
 #include <QString>
@@ -55,11 +54,13 @@ std::string cardsAsJson(const std::vector<audio::CardInfo>& cards)
 std::string cardsAsTable(const std::vector<audio::CardInfo>& cards)
 {
     if (cards.empty()) {
-        return "No audio interface with an input was found. Plug one in, or look whether another program holds it;\n"
+        return "No audio interface with an input was found. Plug one in, or look whether another "
+               "program holds it;\n"
                "meanwhile 'sinewright --source demo' shows the demo oscillator.\n";
     }
     using Row = QStringList;
-    std::vector<Row> rows{{u"host API"_s, u"name"_s, u"inputs"_s, u"default kHz"_s, u"accepts kHz"_s}};
+    std::vector<Row> rows{
+        {u"host API"_s, u"name"_s, u"inputs"_s, u"default kHz"_s, u"accepts kHz"_s}};
     for (const audio::CardInfo& card : cards) {
         rows.push_back({QString::fromStdString(card.hostApi),
                         QString::fromStdString(card.name) + (card.isDefault ? u" *"_s : QString()),
@@ -70,13 +71,16 @@ std::string cardsAsTable(const std::vector<audio::CardInfo>& cards)
     QString table;
     for (const Row& row : rows) {
         for (qsizetype column = 0; column + 1 < row.size(); ++column) {
-            const auto wider = [column](const Row& a, const Row& b) { return a[column].size() < b[column].size(); };
+            const auto wider = [column](const Row& a, const Row& b) {
+                return a[column].size() < b[column].size();
+            };
             const auto width = (*std::max_element(rows.begin(), rows.end(), wider))[column].size();
             table += row[column].leftJustified(width) + u"  "_s;
         }
         table += row.last() + u'\n';
     }
-    table += u"\n* the default. Use one with --source card:NAME, a part of the name will do; card:HOST API::NAME\n"
+    table += u"\n* the default. Use one with --source card:NAME, a part of the name will do; "
+             u"card:HOST API::NAME\n"
              "tells apart inputs of the same name.\n"_s;
     return table.toStdString();
 }

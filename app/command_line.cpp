@@ -71,7 +71,8 @@ void readBand(OptionReader& options, core::Band& band)
     const bool isBand = edges.size() == 2 && isLowNumber && isHighNumber && wanted.lowHz >= 0.0 &&
                         wanted.highHz > wanted.lowHz && wanted.highHz <= kHighestBandHz;
     if (!isBand) {
-        options.complainAbout(u"band", u"two frequencies in Hz are wanted, the lower first, as in 20:20000"_s);
+        options.complainAbout(
+            u"band", u"two frequencies in Hz are wanted, the lower first, as in 20:20000"_s);
         return;
     }
     band = wanted;
@@ -81,10 +82,12 @@ core::MeasureSettings readMeasureSettings(OptionReader& options)
 {
     core::MeasureSettings settings;
     readBand(options, settings.band);
-    settings.harmonicCount = options.wholeNumber(u"harmonics", kLowestHarmonicCount, kHighestHarmonicCount)
-                                 .value_or(settings.harmonicCount);
+    settings.harmonicCount =
+        options.wholeNumber(u"harmonics", kLowestHarmonicCount, kHighestHarmonicCount)
+            .value_or(settings.harmonicCount);
     settings.weighting = options.choice(u"weighting", kWeightingWords).value_or(settings.weighting);
-    settings.fullScaleVrms = options.number(u"full-scale", kLowestFullScaleVrms, kHighestFullScaleVrms);
+    settings.fullScaleVrms =
+        options.number(u"full-scale", kLowestFullScaleVrms, kHighestFullScaleVrms);
     return settings;
 }
 
@@ -103,11 +106,12 @@ std::vector<double> readTrimmer(OptionReader& options, const SourceSpec& spec)
     for (const QString& word : words) {
         bool isNumber = false;
         const double ohm = word.toDouble(&isNumber);
-        if (!isNumber || !(ohm >= audio::kDemoTrimmerLowestOhm && ohm <= audio::kDemoTrimmerHighestOhm)) {
-            options.complainAbout(u"trimmer",
-                                  u"the virtual trimmer goes from %1 to %2 ohms"_s
-                                      .arg(audio::kDemoTrimmerLowestOhm)
-                                      .arg(audio::kDemoTrimmerHighestOhm));
+        if (!isNumber ||
+            !(ohm >= audio::kDemoTrimmerLowestOhm && ohm <= audio::kDemoTrimmerHighestOhm)) {
+            options.complainAbout(
+                u"trimmer",
+                u"the virtual trimmer goes from %1 to %2 ohms"_s.arg(audio::kDemoTrimmerLowestOhm)
+                    .arg(audio::kDemoTrimmerHighestOhm));
             return {};
         }
         stops.push_back(ohm);
@@ -122,12 +126,14 @@ QSize readSize(OptionReader& options, QSize fallback)
     }
     const QStringList edges = options.text(u"size").split(u'x');
     const QSize size(edges.first().toInt(), edges.last().toInt());
-    const auto fits = [](int edge) { return edge >= kSmallestEdge && edge <= kLargestEdge; };
+    const auto fits = [](int edge) {
+        return edge >= kSmallestEdge && edge <= kLargestEdge;
+    };
     if (edges.size() != 2 || !fits(size.width()) || !fits(size.height())) {
-        options.complainAbout(u"size",
-                              u"width and height in pixels are wanted, %1 to %2, as in 1280x800"_s
-                                  .arg(kSmallestEdge)
-                                  .arg(kLargestEdge));
+        options.complainAbout(
+            u"size",
+            u"width and height in pixels are wanted, %1 to %2, as in 1280x800"_s.arg(kSmallestEdge)
+                .arg(kLargestEdge));
         return fallback;
     }
     return size;
@@ -159,8 +165,9 @@ core::Result<Invocation> parseMeasure(const QStringList& arguments)
     MeasureOptions measure;
     const QStringList words = options.words();
     if (words.size() != 1) {
-        options.complain(words.isEmpty() ? u"measure wants a source: 'demo', 'card', 'card:NAME' or a file"_s
-                                         : u"measure wants one source, but '%1' came too"_s.arg(words.value(1)));
+        options.complain(
+            words.isEmpty() ? u"measure wants a source: 'demo', 'card', 'card:NAME' or a file"_s
+                            : u"measure wants one source, but '%1' came too"_s.arg(words.value(1)));
         return finished(options, measure);
     }
     measure.source = readSource(options, words.first());
@@ -196,7 +203,8 @@ PictureOptions readPicture(OptionReader& options)
     if (picture.file.isEmpty()) {
         options.complain(u"--picture wants the name of a file"_s);
     }
-    picture.source = readSource(options, options.has(u"source") ? options.text(u"source") : u"demo"_s);
+    picture.source =
+        readSource(options, options.has(u"source") ? options.text(u"source") : u"demo"_s);
     picture.afterS = options.number(u"after", 0.1, kLongestS).value_or(picture.afterS);
     picture.size = readSize(options, picture.size);
     picture.theme = options.choice(u"theme", kThemeWords).value_or(picture.theme);
@@ -210,7 +218,8 @@ PictureOptions readPicture(OptionReader& options)
 /// The window itself has no use for what only an unattended picture needs.
 WindowOptions readWindow(OptionReader& options)
 {
-    for (const QStringView name : {u"after", u"size", u"theme", u"page", u"scale", u"trimmer", u"report-load"}) {
+    for (const QStringView name :
+         {u"after", u"size", u"theme", u"page", u"scale", u"trimmer", u"report-load"}) {
         if (options.has(name)) {
             options.complain(u"--%1 goes with --picture only"_s.arg(name));
         }
@@ -240,8 +249,8 @@ core::Result<Invocation> parseWindow(const QStringList& arguments)
                           {"report-load", false}},
                          arguments);
     if (!options.words().isEmpty()) {
-        options.complain(
-            u"unknown command '%1' (a file is opened with --source FILE)"_s.arg(options.words().constFirst()));
+        options.complain(u"unknown command '%1' (a file is opened with --source FILE)"_s.arg(
+            options.words().constFirst()));
     }
     if (options.has(u"picture")) {
         return finished(options, readPicture(options));

@@ -94,7 +94,8 @@ core::Result<void> DeviceWorker::bringUp(const OpenOrder& order)
     core::AnalyserConfig config;
     config.rate = format->rate;
     config.settings = order.settings;
-    m_analysis = std::make_unique<AnalysisThread>(*m_ring, order.source.channel, config, order.link);
+    m_analysis =
+        std::make_unique<AnalysisThread>(*m_ring, order.source.channel, config, order.link);
     return m_source->start(*m_ring);
 }
 

@@ -16,7 +16,8 @@
 namespace sinewright::app {
 
 /// An order to change over to another source.
-struct OpenOrder {
+struct OpenOrder
+{
     quint64 serial = 0;
     SourceSpec source{};
     core::MeasureSettings settings{};
@@ -27,7 +28,8 @@ struct OpenOrder {
 ///
 /// All its functions run on the thread it lives on; the session calls them through queued invocations, so that the
 /// seconds that opening a device may take are nobody else's.
-class DeviceWorker final : public QObject {
+class DeviceWorker final : public QObject
+{
     Q_OBJECT
 public:
     /// @param newestSerial  serial of the last order given; older ones that still wait are skipped.

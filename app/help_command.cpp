@@ -5,7 +5,8 @@ namespace sinewright::app {
 
 namespace {
 
-constexpr const char* kProgramHelp = R"(Sinewright: a bench companion for people who trim sine oscillators.
+constexpr const char* kProgramHelp =
+    R"(Sinewright: a bench companion for people who trim sine oscillators.
 
   sinewright [--source SOURCE] [--rate HZ] [--channel N]
         Opens the window. Without --source it shows what it showed last time,
@@ -24,7 +25,7 @@ SOURCE is one of
   card               the default input of the audio interface
   card:NAME          another input by its name or a part of it
   card:HOST::NAME    the same, only among the inputs of one host API
-  FILE               a WAV, FLAC, AIFF or CAF file; write ./demo for a file "demo"
+  FILE               a WAV, FLAC, AIFF or CAF file (./demo for one called demo)
 
 Options
   --rate HZ          sample rate; a card's own unless given, 96000 for the demo
@@ -62,12 +63,12 @@ SOURCE is 'demo', 'card', 'card:NAME', 'card:HOST::NAME' or a file; see
 'sinewright --help'.
 
 Options
-  --json             one JSON object (schema sinewright.reading/1) instead of the
+  --json             one JSON object (schema sinewright.reading/1), no
                      table; a figure that cannot be had is null
   --channel N        channel, counted from 1 (default 1)
   --rate HZ          card and demo: sample rate (default: the card's own; 96000)
   --start S          take: where to begin, in seconds (default 0)
-  --seconds S        how much to measure. Default: of a take all that follows the
+  --seconds S        how much to measure. Default: of a take all behind the
                      start, 60 s at the most; of card and demo 4 s. Ask for more
                      if you like: up to 16777216 samples, 174 s at 96 kHz.
   --band LO:HI       measuring band in Hz (default 20:20000); the upper edge is
@@ -93,7 +94,8 @@ Example
   sinewright measure take.wav --channel 2 --band 20:80000 --full-scale 4
 )";
 
-constexpr const char* kCardsHelp = R"(Lists the audio interfaces with an input: host API, name, inputs, the rate they
+constexpr const char* kCardsHelp =
+    R"(Lists the audio interfaces with an input: host API, name, inputs, the rate they
 run at by default and the rates they accept.
 
   sinewright cards [--json]

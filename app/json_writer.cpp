@@ -17,7 +17,8 @@ namespace {
 std::string quoted(std::string_view utf8)
 {
     const QString text = QString::fromUtf8(utf8.data(), static_cast<qsizetype>(utf8.size()));
-    const std::string array = QJsonDocument(QJsonArray{text}).toJson(QJsonDocument::Compact).toStdString();
+    const std::string array =
+        QJsonDocument(QJsonArray{text}).toJson(QJsonDocument::Compact).toStdString();
     return array.substr(1, array.size() - 2);
 }
 

@@ -13,7 +13,8 @@ namespace sinewright::app {
 /// user's language; a number that is not finite, or is not there, becomes null.
 ///
 /// @thread  one.
-class JsonWriter final {
+class JsonWriter final
+{
 public:
     JsonWriter& beginObject();
     JsonWriter& endObject();

@@ -15,8 +15,9 @@ namespace sinewright::app {
 /// acquire/release makes the slot's contents visible along with its number.
 ///
 /// @thread  one writer, one reader; both calls wait-free but for what T's move and destructor do.
-template<typename T>
-class Mailbox final {
+template <typename T>
+class Mailbox final
+{
 public:
     Mailbox() = default;
     Mailbox(const Mailbox&) = delete;
@@ -26,7 +27,8 @@ public:
     void put(T value)
     {
         m_slots[m_writerSlot] = std::move(value);
-        m_writerSlot = m_middle.exchange(m_writerSlot | kFresh, std::memory_order_acq_rel) & kSlotBits;
+        m_writerSlot =
+            m_middle.exchange(m_writerSlot | kFresh, std::memory_order_acq_rel) & kSlotBits;
     }
 
     /// Reader: the newest value, once; empty when nothing came since.

@@ -23,9 +23,9 @@ int finish(const Outcome& outcome)
 {
     ExitStatus status = outcome.status;
     std::string complaint = outcome.complaint;
-    const bool isWritten =
-        std::fwrite(outcome.output.data(), 1, outcome.output.size(), stdout) == outcome.output.size() &&
-        std::fflush(stdout) == 0;
+    const bool isWritten = std::fwrite(outcome.output.data(), 1, outcome.output.size(), stdout) ==
+                               outcome.output.size() &&
+                           std::fflush(stdout) == 0;
     if (!isWritten) {
         status = ExitStatus::NotWritten;
         complaint = std::string("cannot write to standard output: ") + std::strerror(errno) +
@@ -39,12 +39,19 @@ int finish(const Outcome& outcome)
 
 /// Runs what the command line asks for. The commands that print need no application object: they start faster without
 /// one, and the C locale stays as it is.
-struct Dispatcher {
+struct Dispatcher
+{
     int& argc;
     char** argv;
 
-    Outcome operator()(const WindowOptions& options) const { return runWindow(options, argc, argv); }
-    Outcome operator()(const PictureOptions& options) const { return runPicture(options, argc, argv); }
+    Outcome operator()(const WindowOptions& options) const
+    {
+        return runWindow(options, argc, argv);
+    }
+    Outcome operator()(const PictureOptions& options) const
+    {
+        return runPicture(options, argc, argv);
+    }
     Outcome operator()(const MeasureOptions& options) const { return runMeasure(options); }
     Outcome operator()(const CardsOptions& options) const { return runCards(options); }
     Outcome operator()(const HelpRequest& request) const { return runHelp(request); }

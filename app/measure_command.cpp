@@ -2,17 +2,16 @@
 #include "app/capture.h"
 #include "app/commands.h"
 #include "app/reading_report.h"
-
 #include "audio/demo.h"
 #include "audio/take.h"
 #include "core/measure/measure.h"
-
-#include <tl/expected.hpp>
 
 #include <algorithm>
 #include <cmath>
 #include <filesystem>
 #include <string>
+
+#include <tl/expected.hpp>
 
 namespace sinewright::app {
 
@@ -24,7 +23,8 @@ namespace {
 constexpr double kDemoSettleS = 5.0;
 
 /// What is going to be measured.
-struct SampleStretch {
+struct SampleStretch
+{
     core::SampleRate rate;
     std::vector<double> samples; ///< one channel, 1.0 = full scale
 };
@@ -53,12 +53,14 @@ tl::expected<void, Outcome> checkRequest(const MeasureOptions& options, core::Sa
     const double longestS = static_cast<double>(core::kLongestReading) / rate.hz;
     if (options.secondsS && *options.secondsS > longestS) {
         return refused(ExitStatus::WrongUsage,
-                       "--seconds is too long: at this rate at most " + secondsText(longestS) + " s are measured at once");
+                       "--seconds is too long: at this rate at most " + secondsText(longestS) +
+                           " s are measured at once");
     }
     if (options.settings.band.lowHz >= rate.nyquist().value) {
         return refused(ExitStatus::WrongUsage,
                        "--band begins above half the sample rate (" +
-                           QString::number(rate.nyquist().value).toStdString() + " Hz), where there is nothing");
+                           QString::number(rate.nyquist().value).toStdString() +
+                           " Hz), where there is nothing");
     }
     return {};
 }
@@ -74,8 +76,10 @@ Stretch stretchOfTake(const MeasureOptions& options)
         return tl::unexpected<Outcome>(std::move(fits.error()));
     }
     const double wantedS = options.secondsS.value_or(MeasureOptions::kTakeSeconds);
-    const auto frames = std::min<std::uint64_t>(framesOf(wantedS, info->rate), core::kLongestReading);
-    auto samples = audio::readTake(file, options.source.channel, framesOf(options.startS, info->rate), frames);
+    const auto frames =
+        std::min<std::uint64_t>(framesOf(wantedS, info->rate), core::kLongestReading);
+    auto samples =
+        audio::readTake(file, options.source.channel, framesOf(options.startS, info->rate), frames);
     if (!samples) {
         return refused(ExitStatus::NoSource, samples.error().detail);
     }
@@ -85,8 +89,9 @@ Stretch stretchOfTake(const MeasureOptions& options)
 tl::unexpected<Outcome> noChannel(const SourceSpec& spec, int channels)
 {
     return refused(ExitStatus::NoSource,
-                   textFromSource(spec).toStdString() + ": there is no channel " + std::to_string(spec.channel) +
-                       ", only " + std::to_string(channels) + "; choose another --channel");
+                   textFromSource(spec).toStdString() + ": there is no channel " +
+                       std::to_string(spec.channel) + ", only " + std::to_string(channels) +
+                       "; choose another --channel");
 }
 
 Stretch stretchOfDemo(const MeasureOptions& options)
@@ -99,7 +104,8 @@ Stretch stretchOfDemo(const MeasureOptions& options)
         return tl::unexpected<Outcome>(std::move(fits.error()));
     }
     const double seconds = options.secondsS.value_or(MeasureOptions::kLiveSeconds);
-    return SampleStretch{settings.rate, audio::renderDemo(settings, kDemoSettleS, framesOf(seconds, settings.rate))};
+    return SampleStretch{
+        settings.rate, audio::renderDemo(settings, kDemoSettleS, framesOf(seconds, settings.rate))};
 }
 
 Stretch stretchOfCard(const MeasureOptions& options)
@@ -119,7 +125,8 @@ Stretch stretchOfCard(const MeasureOptions& options)
     auto samples = captureStretch(*source, *format, options.source.channel, seconds);
     if (!samples) {
         return refused(samples.error().isInterrupted ? ExitStatus::Unusable : ExitStatus::NoSource,
-                       textFromSource(options.source).toStdString() + ": " + samples.error().detail);
+                       textFromSource(options.source).toStdString() + ": " +
+                           samples.error().detail);
     }
     return SampleStretch{format->rate, std::move(*samples)};
 }
@@ -148,12 +155,13 @@ Outcome runMeasure(const MeasureOptions& options)
     MeasuredReading measured{.source = options.source,
                              .rate = stretch->rate,
                              .settings = options.settings,
-                             .reading = core::measure(stretch->samples, stretch->rate, options.settings)};
+                             .reading =
+                                 core::measure(stretch->samples, stretch->rate, options.settings)};
     measured.reading.startS = options.startS;
     Outcome outcome;
     outcome.output = options.asJson ? readingAsJson(measured) : readingAsTable(measured);
-    outcome.status =
-        measured.reading.status == core::ReadingStatus::Ok ? ExitStatus::Good : ExitStatus::Unusable;
+    outcome.status = measured.reading.status == core::ReadingStatus::Ok ? ExitStatus::Good
+                                                                        : ExitStatus::Unusable;
     return outcome;
 }
 

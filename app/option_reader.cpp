@@ -14,7 +14,8 @@ OptionReader::OptionReader(const QString& helpHint,
 {
     for (const OptionName& option : options) {
         const QString valueName = option.takesValue ? u"VALUE"_s : QString();
-        m_parser.addOption(QCommandLineOption(QString::fromLatin1(option.name), QString(), valueName));
+        m_parser.addOption(
+            QCommandLineOption(QString::fromLatin1(option.name), QString(), valueName));
     }
     // The parser takes its first word for the program's name.
     const bool understood = m_parser.parse(QStringList{u"sinewright"_s} + arguments);
@@ -47,7 +48,9 @@ std::optional<double> OptionReader::number(QStringView name, double lowest, doub
     bool isNumber = false;
     const double value = text(name).toDouble(&isNumber);
     if (!isNumber || !std::isfinite(value) || value < lowest || value > highest) {
-        complainAbout(name, u"a number from %1 to %2 is wanted"_s.arg(lowest, 0, 'g', 10).arg(highest, 0, 'g', 10));
+        complainAbout(
+            name,
+            u"a number from %1 to %2 is wanted"_s.arg(lowest, 0, 'g', 10).arg(highest, 0, 'g', 10));
         return std::nullopt;
     }
     return value;

@@ -15,7 +15,8 @@
 namespace sinewright::app {
 
 /// An option as a command knows it.
-struct OptionName {
+struct OptionName
+{
     const char* name;       ///< without the dashes
     bool takesValue = true; ///< false: it is there or it is not
 };
@@ -24,11 +25,14 @@ struct OptionName {
 /// looks once, at the end.
 ///
 /// @thread  one.
-class OptionReader final {
+class OptionReader final
+{
 public:
     /// @param helpHint   what to type for help: "sinewright measure --help".
     /// @param arguments  after the command's name.
-    OptionReader(const QString& helpHint, std::initializer_list<OptionName> options, const QStringList& arguments);
+    OptionReader(const QString& helpHint,
+                 std::initializer_list<OptionName> options,
+                 const QStringList& arguments);
 
     [[nodiscard]] bool has(QStringView name) const;
     [[nodiscard]] QString text(QStringView name) const;
@@ -39,7 +43,7 @@ public:
     std::optional<int> wholeNumber(QStringView name, int lowest, int highest);
 
     /// What the option's word spells; empty when the option is not there or says something else.
-    template<typename T, std::size_t N>
+    template <typename T, std::size_t N>
     std::optional<T> choice(QStringView name, const Words<T, N>& words)
     {
         if (!has(name)) {
@@ -47,7 +51,9 @@ public:
         }
         const auto value = valueOf(words, text(name));
         if (!value) {
-            complainAbout(name, QStringLiteral("one of %1 is wanted").arg(allWords(words).join(QStringLiteral(", "))));
+            complainAbout(name,
+                          QStringLiteral("one of %1 is wanted")
+                              .arg(allWords(words).join(QStringLiteral(", "))));
         }
         return value;
     }

@@ -18,8 +18,10 @@ namespace sinewright::app {
 ///
 /// @return  the path it was saved as.
 /// @error WriteFailed: folder missing or not writable, disk full.
-[[nodiscard]] core::Result<QString>
-savePicture(const QImage& image, const QString& folder, const QDateTime& when, const QString& subjectName);
+[[nodiscard]] core::Result<QString> savePicture(const QImage& image,
+                                                const QString& folder,
+                                                const QDateTime& when,
+                                                const QString& subjectName);
 
 /// Saves as PNG under exactly this name, over what is there.
 /// @error WriteFailed

@@ -90,7 +90,8 @@ void PictureRun::turnTrimmer(double shownS)
         return;
     }
     const auto stops = m_options.trimmerOhm.size();
-    const double passed = std::clamp(shownS / m_options.afterS, 0.0, 1.0) * static_cast<double>(stops);
+    const double passed =
+        std::clamp(shownS / m_options.afterS, 0.0, 1.0) * static_cast<double>(stops);
     const double ohm = m_options.trimmerOhm[std::min(static_cast<std::size_t>(passed), stops - 1)];
     if (ohm != m_session.trimmerOhm()) {
         m_wiring.turnTrimmer(ohm);
@@ -112,7 +113,8 @@ std::string PictureRun::loadReport(const LoadMark& from, const LoadMark& to) con
         constexpr double kPercent = 100.0;
         return span > 0.0 ? kPercent * (after - before) / span : 0.0;
     };
-    return u"load of one core over %1 s: analysis %2 %, drawing %3 %, total %4 %\n"_s.arg(span, 0, 'f', 1)
+    return u"load of one core over %1 s: analysis %2 %, drawing %3 %, total %4 %\n"_s
+        .arg(span, 0, 'f', 1)
         .arg(percent(from.analysisS, to.analysisS), 0, 'f', 1)
         .arg(percent(from.drawingS, to.drawingS), 0, 'f', 1)
         .arg(percent(from.totalS, to.totalS), 0, 'f', 1)
@@ -131,7 +133,8 @@ Outcome PictureRun::picture()
     }
     // The display timer has had the frame by now or gets it in the next turn.
     QGuiApplication::processEvents();
-    const QImage image = m_wiring.picture(m_window.sheet(), pageTitle(m_options.page), QDateTime::currentDateTime());
+    const QImage image =
+        m_wiring.picture(m_window.sheet(), pageTitle(m_options.page), QDateTime::currentDateTime());
     if (const auto written = writePicture(image, m_options.file); !written) {
         return complaint(ExitStatus::NotWritten, written.error().detail);
     }
@@ -141,7 +144,8 @@ Outcome PictureRun::picture()
     if (m_options.reportsLoad) {
         outcome.output += loadReport(m_loadFrom, loadTo);
     }
-    outcome.status = reading.status == core::ReadingStatus::Ok ? ExitStatus::Good : ExitStatus::Unusable;
+    outcome.status =
+        reading.status == core::ReadingStatus::Ok ? ExitStatus::Good : ExitStatus::Unusable;
     return outcome;
 }
 

@@ -16,7 +16,8 @@
 namespace sinewright::app {
 
 /// What threads have used so far, to be compared with a later look.
-struct LoadMark {
+struct LoadMark
+{
     double atS = 0.0;       ///< on the steady clock
     double analysisS = 0.0; ///< processor time of [dsp]
     double drawingS = 0.0;  ///< of [gui]
@@ -26,7 +27,8 @@ struct LoadMark {
 /// The window off screen for a while, and a picture of it.
 ///
 /// [gui] It runs its own event loop; the QApplication is there before.
-class PictureRun final : public QObject {
+class PictureRun final : public QObject
+{
     Q_OBJECT
 public:
     PictureRun(const PictureOptions& options, const QString& settingsFile);

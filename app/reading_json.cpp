@@ -2,7 +2,6 @@
 #include "app/json_writer.h"
 #include "app/reading_report.h"
 #include "app/words.h"
-
 #include "core/units.h"
 
 #include <algorithm>
@@ -24,13 +23,14 @@ constexpr Words<core::ReadingStatus, 4> kStatusWords{{{"ok", core::ReadingStatus
                                                       {"too-short", core::ReadingStatus::TooShort},
                                                       {"overload", core::ReadingStatus::Overload}}};
 
-constexpr Words<core::Warning, 7> kWarningWords{{{"input-overload", core::Warning::InputOverload},
-                                                 {"harmonics-above-band", core::Warning::HarmonicsAboveBand},
-                                                 {"unsteady-level", core::Warning::UnsteadyLevel},
-                                                 {"unsteady-frequency", core::Warning::UnsteadyFrequency},
-                                                 {"mains-hum", core::Warning::MainsHum},
-                                                 {"dc-offset", core::Warning::DcOffset},
-                                                 {"card-limited", core::Warning::CardLimited}}};
+constexpr Words<core::Warning, 7> kWarningWords{
+    {{"input-overload", core::Warning::InputOverload},
+     {"harmonics-above-band", core::Warning::HarmonicsAboveBand},
+     {"unsteady-level", core::Warning::UnsteadyLevel},
+     {"unsteady-frequency", core::Warning::UnsteadyFrequency},
+     {"mains-hum", core::Warning::MainsHum},
+     {"dc-offset", core::Warning::DcOffset},
+     {"card-limited", core::Warning::CardLimited}}};
 
 std::optional<double> percent(std::optional<double> ratio)
 {

@@ -10,7 +10,8 @@
 namespace sinewright::app {
 
 /// A reading with where it came from: all that a report of it needs.
-struct MeasuredReading {
+struct MeasuredReading
+{
     SourceSpec source{};
     core::SampleRate rate{};
     core::MeasureSettings settings{};

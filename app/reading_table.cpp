@@ -19,7 +19,9 @@ constexpr int kValueWidth = 14;
 /// As the window sets it, in characters that every terminal and every script has.
 QString plain(QString text)
 {
-    return text.replace(QChar(0x2212), u'-').replace(QChar(0x00A0), u' ').replace(ui::kAbsent, u'-');
+    return text.replace(QChar(0x2212), u'-')
+        .replace(QChar(0x00A0), u' ')
+        .replace(ui::kAbsent, u'-');
 }
 
 QString plain(const ui::FigureText& figure)
@@ -31,8 +33,8 @@ QString plain(const ui::FigureText& figure)
 /// "  label        value   second value".
 QString row(const QString& label, const ui::FigureText& figure, const QString& second = {})
 {
-    QString line = u"  "_s + label.leftJustified(kLabelWidth) + plain(figure.value).rightJustified(kValueWidth) + u' ' +
-                   figure.unit;
+    QString line = u"  "_s + label.leftJustified(kLabelWidth) +
+                   plain(figure.value).rightJustified(kValueWidth) + u' ' + figure.unit;
     if (!second.isEmpty()) {
         line = line.leftJustified(kLabelWidth + kValueWidth + 9) + second;
     }
@@ -49,7 +51,9 @@ QString frequencyRow(const core::Reading& reading)
 {
     const QString deviation =
         reading.frequencyStdHz ? u"+/- %1 Hz"_s.arg(*reading.frequencyStdHz, 0, 'g', 2) : QString();
-    return row(u"frequency"_s, ui::frequencyFigure(reading.frequencyHz, reading.frequencyStdHz), deviation);
+    return row(u"frequency"_s,
+               ui::frequencyFigure(reading.frequencyHz, reading.frequencyStdHz),
+               deviation);
 }
 
 QString levelRow(const core::Reading& reading)
@@ -71,8 +75,7 @@ QString dcRow(const core::Reading& reading)
 QString harmonicRow(const core::HarmonicReading& harmonic)
 {
     const ui::FigureText percent = ui::percentFigure(harmonic.ratio);
-    return u"  %1 %2 Hz %3 dBc %4 % %5 deg%6\n"_s
-        .arg(harmonic.order, 8)
+    return u"  %1 %2 Hz %3 dBc %4 % %5 deg%6\n"_s.arg(harmonic.order, 8)
         .arg(harmonic.frequencyHz, 13, 'f', 2)
         .arg(plain(ui::ratioDecibelFigure(harmonic.ratio, 2, {}).value), 9)
         .arg(plain(percent.value), 12)
@@ -129,10 +132,10 @@ QString heading(const MeasuredReading& measured)
 QString settingsLine(const MeasuredReading& measured)
 {
     const core::MeasureSettings& settings = measured.settings;
-    const QString weighting =
-        settings.weighting == core::Weighting::None     ? u"no weighting"_s
-        : settings.weighting == core::Weighting::Itu468 ? u"468 weighting with an rms detector"_s
-                                                        : u"A weighting"_s;
+    const QString weighting = settings.weighting == core::Weighting::None ? u"no weighting"_s
+                              : settings.weighting == core::Weighting::Itu468
+                                  ? u"468 weighting with an rms detector"_s
+                                  : u"A weighting"_s;
     return u"band %1 to %2 Hz, harmonics 2 to %3, %4\n"_s.arg(settings.band.lowHz, 0, 'f', 0)
         .arg(std::min(settings.band.highHz, measured.rate.nyquist().value), 0, 'f', 0)
         .arg(settings.harmonicCount)
@@ -188,9 +191,9 @@ std::string readingAsLine(const core::Reading& reading)
     if (!reading.frequencyHz) {
         return plain(statusSentence(reading.status)).toStdString();
     }
-    QString line = plain(ui::frequencyFigure(reading.frequencyHz, reading.frequencyStdHz)) + u", "_s +
-                   plain(ui::decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)) + u", THD "_s +
-                   plain(ui::percentFigure(reading.thdRatio)) + u", THD+N "_s +
+    QString line = plain(ui::frequencyFigure(reading.frequencyHz, reading.frequencyStdHz)) +
+                   u", "_s + plain(ui::decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)) +
+                   u", THD "_s + plain(ui::percentFigure(reading.thdRatio)) + u", THD+N "_s +
                    plain(ui::percentFigure(reading.thdnRatio));
     if (reading.status != core::ReadingStatus::Ok) {
         line += u" ("_s + ui::statusText(reading.status) + u')';

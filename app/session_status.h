@@ -15,7 +15,8 @@
 namespace sinewright::app {
 
 /// How the session stands: sent from [dev] to [gui] when something of it has changed.
-struct SessionStatus {
+struct SessionStatus
+{
     using Condition = ui::BenchState::Condition;
     Condition condition = Condition::Starting;
     SourceSpec source{};

@@ -48,7 +48,8 @@ QString textOf(const QSettings& file, const char* name)
 }
 
 /// The number within its range, or `fallback` when there is none.
-double numberOf(const QSettings& file, const char* name, double lowest, double highest, double fallback)
+double
+numberOf(const QSettings& file, const char* name, double lowest, double highest, double fallback)
 {
     bool isNumber = false;
     const double value = textOf(file, name).toDouble(&isNumber);
@@ -62,7 +63,7 @@ int wholeNumberOf(const QSettings& file, const char* name, int lowest, int highe
     return isNumber ? std::clamp(value, lowest, highest) : fallback;
 }
 
-template<typename T, std::size_t N>
+template <typename T, std::size_t N>
 T choiceOf(const QSettings& file, const char* name, const Words<T, N>& words, T fallback)
 {
     return valueOf(words, textOf(file, name)).value_or(fallback);
@@ -83,7 +84,8 @@ core::MeasureSettings readMeasure(const QSettings& file)
     if (band.lowHz < band.highHz) {
         measure.band = band;
     }
-    measure.harmonicCount = wholeNumberOf(file, kHarmonicsKey, kLowestHarmonicCount, kHighestHarmonicCount, measure.harmonicCount);
+    measure.harmonicCount = wholeNumberOf(
+        file, kHarmonicsKey, kLowestHarmonicCount, kHighestHarmonicCount, measure.harmonicCount);
     measure.weighting = choiceOf(file, kWeightingKey, kWeightingWords, measure.weighting);
     const double fullScaleVrms = numberOf(file, kFullScaleKey, 0.0, kHighestFullScaleVrms, 0.0);
     if (fullScaleVrms > 0.0) {
@@ -106,12 +108,14 @@ SourceSpec readSource(const QSettings& file)
 Remembered read(const QSettings& file)
 {
     Remembered values;
-    if (wholeNumberOf(file, kVersionKey, 0, std::numeric_limits<int>::max(), 0) != Settings::kVersion) {
+    if (wholeNumberOf(file, kVersionKey, 0, std::numeric_limits<int>::max(), 0) !=
+        Settings::kVersion) {
         return values;
     }
     values.view.theme = choiceOf(file, kThemeKey, kThemeWords, values.view.theme);
     values.view.page = choiceOf(file, kPageKey, kPageWords, values.view.page);
-    values.view.pictureScale = wholeNumberOf(file, kPictureScaleKey, 1, kLargestPictureScale, values.view.pictureScale);
+    values.view.pictureScale =
+        wholeNumberOf(file, kPictureScaleKey, 1, kLargestPictureScale, values.view.pictureScale);
     values.view.geometry = file.value(key(kGeometryKey)).toByteArray();
     values.source = readSource(file);
     values.measure = readMeasure(file);
@@ -132,14 +136,16 @@ void writeTo(QSettings& file, const Remembered& values)
     file.setValue(key(kBandLowKey), digits(values.measure.band.lowHz));
     file.setValue(key(kBandHighKey), digits(values.measure.band.highHz));
     file.setValue(key(kHarmonicsKey), values.measure.harmonicCount);
-    file.setValue(key(kWeightingKey), QString::fromLatin1(wordOf(kWeightingWords, values.measure.weighting)));
+    file.setValue(key(kWeightingKey),
+                  QString::fromLatin1(wordOf(kWeightingWords, values.measure.weighting)));
     file.setValue(key(kFullScaleKey), digits(values.measure.fullScaleVrms.value_or(0.0)));
     file.setValue(key(kPictureFolderKey), values.pictureFolder);
 }
 
 QString usualFile()
 {
-    return QStandardPaths::writableLocation(QStandardPaths::AppConfigLocation) + u"/sinewright.ini"_s;
+    return QStandardPaths::writableLocation(QStandardPaths::AppConfigLocation) +
+           u"/sinewright.ini"_s;
 }
 
 } // namespace

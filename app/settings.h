@@ -12,7 +12,8 @@
 namespace sinewright::app {
 
 /// What is remembered between runs.
-struct Remembered {
+struct Remembered
+{
     ui::ViewSettings view;
     SourceSpec source;
     core::MeasureSettings measure;
@@ -25,7 +26,8 @@ struct Remembered {
 /// makes no sense becomes the default. A file of a version that is not known is not read.
 ///
 /// @thread  [gui].
-class Settings final : public QObject {
+class Settings final : public QObject
+{
     Q_OBJECT
 public:
     static constexpr int kVersion = 1;

@@ -68,7 +68,8 @@ QString textFromSource(const SourceSpec& spec)
 
 QString sourceLabel(const SourceSpec& spec)
 {
-    return spec.kind == ui::SourceKind::Take ? QFileInfo(spec.name).fileName() : textFromSource(spec);
+    return spec.kind == ui::SourceKind::Take ? QFileInfo(spec.name).fileName()
+                                             : textFromSource(spec);
 }
 
 audio::DemoSettings demoSettings(const SourceSpec& spec, double trimmerOhm)

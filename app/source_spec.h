@@ -13,9 +13,11 @@
 namespace sinewright::app {
 
 /// A source as a person names it, and what is wanted of it.
-struct SourceSpec {
+struct SourceSpec
+{
     ui::SourceKind kind = ui::SourceKind::Demo;
-    QString name{};      ///< card: its name or part of it, empty for the default; take: the file; demo: empty
+    QString
+        name{}; ///< card: its name or part of it, empty for the default; take: the file; demo: empty
     QString hostApi{};   ///< card: only among this host API's; empty: any
     double rateHz = 0.0; ///< 0: the source's own
     int channel = 1;     ///< from 1
@@ -43,7 +45,7 @@ inline constexpr double kDemoRateHz = 96000.0; ///< unless another is asked for
 [[nodiscard]] audio::DemoSettings demoSettings(const SourceSpec& spec, double trimmerOhm);
 
 /// The source itself, not yet open. `trimmer` is the knob of a demo and ignored by the others.
-[[nodiscard]] std::unique_ptr<audio::Source> makeSource(const SourceSpec& spec,
-                                                        std::shared_ptr<const audio::DemoTrimmer> trimmer);
+[[nodiscard]] std::unique_ptr<audio::Source>
+makeSource(const SourceSpec& spec, std::shared_ptr<const audio::DemoTrimmer> trimmer);
 
 } // namespace sinewright::app

@@ -7,6 +7,8 @@
 #include "app/window_wiring.h"
 
 #include <QApplication>
+#include <QFile>
+#include <QLocale>
 #include <QTemporaryDir>
 
 namespace sinewright::app {
@@ -27,12 +29,14 @@ void nameApplication()
 
 Outcome runWindow(const WindowOptions& options, int& argc, char** argv)
 {
-    const bool hasDisplay = qEnvironmentVariableIsSet("DISPLAY") || qEnvironmentVariableIsSet("WAYLAND_DISPLAY") ||
+    const bool hasDisplay = qEnvironmentVariableIsSet("DISPLAY") ||
+                            qEnvironmentVariableIsSet("WAYLAND_DISPLAY") ||
                             qEnvironmentVariableIsSet("QT_QPA_PLATFORM");
     if (!hasDisplay) {
-        return complaint(ExitStatus::NotWritten,
-                         "the window needs a display and there is none; 'sinewright --picture FILE' and "
-                         "'sinewright measure SOURCE' need none");
+        return complaint(
+            ExitStatus::NotWritten,
+            "the window needs a display and there is none; 'sinewright --picture FILE' and "
+            "'sinewright measure SOURCE' need none");
     }
     const QApplication application(argc, argv);
     nameApplication();
@@ -49,19 +53,23 @@ Outcome runWindow(const WindowOptions& options, int& argc, char** argv)
 
 Outcome runPicture(const PictureOptions& options, int& argc, char** argv)
 {
+    const QTemporaryDir folder;
+    if (!folder.isValid()) {
+        return complaint(ExitStatus::NotWritten, folder.errorString().toStdString());
+    }
     // The same picture on every machine: off screen unless told otherwise, no user's locale, no user's scale.
     if (!qEnvironmentVariableIsSet("QT_QPA_PLATFORM")) {
         qputenv("QT_QPA_PLATFORM", "offscreen");
+    }
+    if (!qEnvironmentVariableIsSet("XDG_RUNTIME_DIR")) {
+        // Qt grumbles on stderr without one.
+        qputenv("XDG_RUNTIME_DIR", QFile::encodeName(folder.path()));
     }
     qputenv("LC_ALL", "C.UTF-8");
     qputenv("QT_SCALE_FACTOR", "1");
     const QApplication application(argc, argv);
     nameApplication();
     QLocale::setDefault(QLocale::c());
-    const QTemporaryDir folder;
-    if (!folder.isValid()) {
-        return complaint(ExitStatus::NotWritten, folder.errorString().toStdString());
-    }
     return PictureRun(options, folder.filePath(u"settings.ini"_s)).run();
 }
 

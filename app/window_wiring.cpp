@@ -50,11 +50,14 @@ SourceSpec specFromChoice(const ui::SourceChoice& choice)
     return spec;
 }
 
-QList<ui::SourceChoice> sourceChoices(const std::vector<audio::CardInfo>& cards, const SourceSpec& current)
+QList<ui::SourceChoice> sourceChoices(const std::vector<audio::CardInfo>& cards,
+                                      const SourceSpec& current)
 {
     QList<ui::SourceChoice> choices{choiceFromSpec(SourceSpec())};
     for (const audio::CardInfo& card : cards) {
-        const auto isNamesake = [&card](const audio::CardInfo& other) { return other.name == card.name; };
+        const auto isNamesake = [&card](const audio::CardInfo& other) {
+            return other.name == card.name;
+        };
         const bool isAlone = std::count_if(cards.begin(), cards.end(), isNamesake) == 1;
         SourceSpec spec{.kind = SourceKind::Card, .name = QString::fromStdString(card.name)};
         if (!isAlone) {
@@ -62,12 +65,15 @@ QList<ui::SourceChoice> sourceChoices(const std::vector<audio::CardInfo>& cards,
         }
         ui::SourceChoice choice = choiceFromSpec(spec);
         //: %1 name of an audio interface, %2 of the system it is reached through
-        choice.label = WindowWiring::tr("%1 (%2)").arg(spec.name, QString::fromStdString(card.hostApi));
+        choice.label =
+            WindowWiring::tr("%1 (%2)").arg(spec.name, QString::fromStdString(card.hostApi));
         choices.append(choice);
     }
     // What runs is in the list even when it was named on the command line, by a part of its name or as a file.
     const QString currentId = textFromSource(current);
-    const auto isCurrent = [&currentId](const ui::SourceChoice& choice) { return choice.id == currentId; };
+    const auto isCurrent = [&currentId](const ui::SourceChoice& choice) {
+        return choice.id == currentId;
+    };
     if (std::none_of(choices.begin(), choices.end(), isCurrent)) {
         choices.append(choiceFromSpec(current));
     }
@@ -92,7 +98,10 @@ ui::BenchState benchState(const SessionStatus& status, double trimmerOhm)
     return state;
 }
 
-WindowWiring::WindowWiring(ui::MainWindow& window, BenchSession& session, Settings& settings, QObject* parent)
+WindowWiring::WindowWiring(ui::MainWindow& window,
+                           BenchSession& session,
+                           Settings& settings,
+                           QObject* parent)
     : QObject(parent)
     , m_window(window)
     , m_session(session)
@@ -104,12 +113,17 @@ WindowWiring::WindowWiring(ui::MainWindow& window, BenchSession& session, Settin
     connect(&window, &MainWindow::bestResetWanted, &session, &BenchSession::resetBest);
     connect(&window, &MainWindow::pictureWanted, this, &WindowWiring::takePicture);
     connect(&window, &MainWindow::trimmerMoved, this, &WindowWiring::turnTrimmer);
-    connect(&window, &MainWindow::measureSettingsChosen, this, [this](const core::MeasureSettings& measure) {
-        m_session.setMeasureSettings(measure);
-        m_settings.setMeasure(measure);
-        m_window.setMeasureSettings(measure);
+    connect(&window,
+            &MainWindow::measureSettingsChosen,
+            this,
+            [this](const core::MeasureSettings& measure) {
+                m_session.setMeasureSettings(measure);
+                m_settings.setMeasure(measure);
+                m_window.setMeasureSettings(measure);
+            });
+    connect(&window, &MainWindow::viewSettingsChanged, this, [this] {
+        m_settings.setView(m_window.viewSettings());
     });
-    connect(&window, &MainWindow::viewSettingsChanged, this, [this] { m_settings.setView(m_window.viewSettings()); });
     connect(&session, &BenchSession::statusChanged, this, &WindowWiring::showStatus);
     connect(&session, &BenchSession::cardsListed, this, &WindowWiring::noteCards);
 }
@@ -185,9 +199,10 @@ QImage WindowWiring::picture(QWidget* subject, const QString& title, const QDate
 {
     const auto frame = m_window.shownFrame();
     const ui::BenchState state = benchState(m_session.status(), m_session.trimmerOhm());
-    return ui::composePicture(subject,
-                              ui::captionFor(title, frame.get(), state, m_settings.values().measure, when),
-                              m_window.viewSettings().pictureScale);
+    return ui::composePicture(
+        subject,
+        ui::captionFor(title, frame.get(), state, m_settings.values().measure, when),
+        m_window.viewSettings().pictureScale);
 }
 
 void WindowWiring::takePicture(const ui::PictureRequest& request)
@@ -201,7 +216,8 @@ void WindowWiring::takePicture(const ui::PictureRequest& request)
         return;
     }
     const auto path = savePicture(image, folder, when, request.subjectName);
-    m_window.showNotice(path ? tr("Picture saved as %1").arg(*path) : QString::fromStdString(path.error().detail));
+    m_window.showNotice(path ? tr("Picture saved as %1").arg(*path)
+                             : QString::fromStdString(path.error().detail));
 }
 
 } // namespace sinewright::app

@@ -21,10 +21,14 @@ namespace sinewright::app {
 /// stands goes to the window.
 ///
 /// [gui] Session, settings and window outlive it.
-class WindowWiring final : public QObject {
+class WindowWiring final : public QObject
+{
     Q_OBJECT
 public:
-    WindowWiring(ui::MainWindow& window, BenchSession& session, Settings& settings, QObject* parent = nullptr);
+    WindowWiring(ui::MainWindow& window,
+                 BenchSession& session,
+                 Settings& settings,
+                 QObject* parent = nullptr);
 
     /// Shows what is remembered, and starts with this source.
     void start(const SourceSpec& source);
@@ -33,7 +37,8 @@ public:
     void turnTrimmer(double ohm);
 
     /// A part of the window as it stands, with its caption.
-    [[nodiscard]] QImage picture(QWidget* subject, const QString& title, const QDateTime& when) const;
+    [[nodiscard]] QImage
+    picture(QWidget* subject, const QString& title, const QDateTime& when) const;
 
 private:
     void openChoice(const ui::SourceChoice& choice);
@@ -43,7 +48,6 @@ private:
     void noteCards(const std::vector<audio::CardInfo>& cards);
     void takePicture(const ui::PictureRequest& request);
     [[nodiscard]] QString pictureFolder();
-
 
     ui::MainWindow& m_window;
     BenchSession& m_session;

@@ -24,7 +24,11 @@ constexpr auto kDeadAfter = 500ms;
 /// A PulseAudio null sink's monitor was seen to give its first samples 1.9 s after the start when nothing played.
 constexpr auto kFirstSamplesWithin = 4s;
 
+/// Listing the devices costs 13 kB each time, which ALSA's plug-ins do not give back (seen with alsa-plugins 1.2.7): an
+/// interface that stays away for days is therefore looked for less often after a while.
 constexpr auto kRetryEvery = 1s;
+constexpr auto kPatientAfter = 5min;
+constexpr auto kPatientRetryEvery = 10s;
 constexpr auto kOpenPatience = 10s;
 constexpr auto kClosePatience = 2s;
 constexpr double kSilentAfterSeconds = 1.0;
@@ -85,6 +89,7 @@ public:
         }
         m_ring = &ring;
         m_lastHeard.reset();
+        m_lostAt = Clock::now();
         auto starting = beginStarting();
         const auto started = answerWithin(starting, kOpenPatience);
         if (!started || !*started) {
@@ -129,7 +134,7 @@ public:
                 if (m_starting.get()) {
                     enterStreaming();
                 } else {
-                    lose(kRetryEvery);
+                    tryAgainLater();
                 }
             }
             break;
@@ -167,7 +172,7 @@ private:
         const bool isLate =
             hasCome ? now - tap.lastHeard() > kDeadAfter : now - m_startedAt > kFirstSamplesWithin;
         if (isLate || tap.hasEnded()) {
-            lose(0s);
+            lose();
             return;
         }
         if (!hasCome) {
@@ -183,26 +188,41 @@ private:
         }
     }
 
-    void lose(Clock::duration retryAfter)
+    /// The stream gives nothing any more.
+    void lose()
+    {
+        if (m_stream->tap().callbacks() > 0) {
+            m_lostAt = Clock::now(); // else it is the same outage still
+        }
+        tryAgain(0s);
+    }
+
+    void tryAgain(Clock::duration retryAfter)
     {
         dropStream();
         m_phase = Phase::Waiting;
         m_nextTry = Clock::now() + retryAfter;
         m_board.write(SourceCondition::Lost,
                       "input '" + m_label +
-                          "' gives no samples any more and is looked for once a second: check its "
-                          "cable, its power and the sound server");
+                          "' gives no samples any more and is being looked for: check its cable, "
+                          "its power and the sound server");
+    }
+
+    void tryAgainLater()
+    {
+        const bool isLongGone = Clock::now() - m_lostAt > kPatientAfter;
+        tryAgain(isLongGone ? Clock::duration(kPatientRetryEvery) : kRetryEvery);
     }
 
     void adopt(Opened opened)
     {
         if (!opened) {
-            lose(kRetryEvery);
+            tryAgainLater();
             return;
         }
         const StreamFormat format = (*opened)->format();
         if (format.rate != m_format.rate || format.channels != m_format.channels) {
-            lose(kRetryEvery);
+            tryAgainLater();
             m_board.write(SourceCondition::Lost,
                           "input '" + m_label +
                               "' is back with another rate or fewer channels: choose it anew");
@@ -252,6 +272,7 @@ private:
     SampleRing* m_ring = nullptr;
     std::optional<Clock::time_point> m_lastHeard; ///< of a stream that was lost
     Clock::time_point m_startedAt;
+    Clock::time_point m_lostAt;
     Clock::time_point m_nextTry;
     std::future<Opened> m_opening;
     std::future<core::Result<void>> m_starting;

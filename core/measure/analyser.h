@@ -1,32 +1,36 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "core/measure/frame.h"
+#include "core/measure/reading.h"
+#include "core/units.h"
+
 #include <cstdint>
 #include <memory>
 #include <span>
 #include <vector>
 
-#include "core/measure/frame.h"
-#include "core/measure/reading.h"
-#include "core/units.h"
-
 namespace sinewright::core {
 
 /// A stretch of one channel on its way to the analyser.
-struct Block {
-    std::uint64_t firstFrame = 0;    ///< number of its first sample, counted from the start of the source
-    std::uint64_t lostBefore = 0;    ///< samples lost right before it; not 0 marks a gap
-    std::span<const double> samples; ///< 1.0 = full scale; values that are not finite are treated as lost
+struct Block
+{
+    std::uint64_t firstFrame =
+        0; ///< number of its first sample, counted from the start of the source
+    std::uint64_t lostBefore = 0; ///< samples lost right before it; not 0 marks a gap
+    std::span<const double>
+        samples; ///< 1.0 = full scale; values that are not finite are treated as lost
 };
 
 /// How often and from how much signal readings are made.
-struct AnalyserConfig {
+struct AnalyserConfig
+{
     SampleRate rate;
     MeasureSettings settings;
-    double quickEveryS = 0.05;  ///< [s] at least 10 quick readings a second
-    double quickLengthS = 0.1;  ///< [s] at least; lengthened to 8 periods of a low tone
-    double fullEveryS = 0.5;    ///< [s]
-    double fullLengthS = 2.0;   ///< [s]
+    double quickEveryS = 0.05; ///< [s] at least 10 quick readings a second
+    double quickLengthS = 0.1; ///< [s] at least; lengthened to 8 periods of a low tone
+    double fullEveryS = 0.5;   ///< [s]
+    double fullLengthS = 2.0;  ///< [s]
 };
 
 /// Turns a stream of blocks into frames with quick and full readings, spectrum, cycle residual and trim trend.
@@ -35,7 +39,8 @@ struct AnalyserConfig {
 /// before one is dropped.
 ///
 /// @thread  one; not synchronised.
-class Analyser final {
+class Analyser final
+{
 public:
     explicit Analyser(const AnalyserConfig& config);
     ~Analyser();

@@ -58,20 +58,27 @@ gather(const BlockGrid& grid, std::span<const Complex> blockPhasors, std::size_t
 
 } // namespace
 
-BlockGrid::BlockGrid(std::size_t stretchSamples, double periods) : samples(stretchSamples)
+namespace {
+
+std::size_t blockLength(std::size_t samples, double periods)
 {
     const double period = static_cast<double>(samples) / periods;
     const std::size_t wanted =
         std::min(kLongestUsualBlock, (samples + kWantedBlocks - 1) / kWantedBlocks);
-    length = std::max(static_cast<std::size_t>(std::ceil(period)), wanted);
-    blocks = (samples + length - 1) / length;
+    const std::size_t length = std::max(static_cast<std::size_t>(std::ceil(period)), wanted);
     // A last block much shorter than the others says little: make them all a little longer instead.
-    if (blocks > 1 && lengthOf(blocks - 1) < length / 2) {
-        const std::size_t fewer = blocks - 1;
-        length = (samples + fewer - 1) / fewer;
-        blocks = (samples + length - 1) / length;
-    }
+    const std::size_t whole = samples / length;
+    const std::size_t rest = samples % length;
+    return rest > 0 && rest < length / 2 && whole > 0 ? (samples + whole - 1) / whole : length;
 }
+
+} // namespace
+
+BlockGrid::BlockGrid(std::size_t stretchSamples, double periods)
+    : samples(stretchSamples)
+    , length(blockLength(stretchSamples, periods))
+    , blocks((stretchSamples + length - 1) / length)
+{}
 
 std::size_t BlockGrid::lengthOf(std::size_t block) const
 {

@@ -30,12 +30,10 @@ public:
     FigureWriter(const ToneFindings& findings, Reading& reading)
         : m_findings(findings)
         , m_reading(reading)
-    {
-        // As mean square of a sample, were the noise about the fundamental white.
-        m_samplePowerFs2 = findings.residual.localPowerFs2(findings.model.periods) *
-                           static_cast<double>(findings.residual.size() - 1);
-        m_phasorPowerFs2 = m_samplePowerFs2 * findings.phasorNoise / 2.0;
-    }
+        , m_samplePowerFs2(findings.residual.localPowerFs2(findings.model.periods) *
+                           static_cast<double>(findings.residual.size() - 1))
+        , m_phasorPowerFs2(m_samplePowerFs2 * findings.phasorNoise / 2.0)
+    {}
 
     void writeTone()
     {
@@ -169,8 +167,8 @@ private:
 
     const ToneFindings& m_findings;
     Reading& m_reading;
-    double m_samplePowerFs2 = 0.0; ///< noise about the fundamental
-    double m_phasorPowerFs2 = 0.0; ///< what that noise adds to a harmonic's squared rms
+    double m_samplePowerFs2; ///< noise about the fundamental, as mean square were it white
+    double m_phasorPowerFs2; ///< what that noise adds to a harmonic's squared rms
 };
 
 } // namespace

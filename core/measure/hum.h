@@ -18,15 +18,13 @@ struct HumLine
 
 /// Looks for lines at 50 n and 60 n Hz, n = 1 .. 6, up to 0.2 % beside their nominal place.
 ///
-/// A line counts when it stands 10 dB above the median density around it and so high that plain noise would raise one
-/// of all the places looked at in one stretch of ten thousand. Lines within the resolution of the fundamental or of a
-/// harmonic are not hum.
+/// A line counts when it stands 10 dB above the median density on either side of it and so high that plain noise would raise one
+/// of all the places looked at in one stretch of ten thousand. Lines within the resolution of the fundamental or of any
+/// multiple of it are not hum.
 ///
 /// @param resolutionHz  one over the stretch's length [Hz].
 /// @return  The strongest line of the family that holds it; empty when none counts or the stretch is too short to
 ///          tell.
-/// @source  Threshold derived here: with the background m taken from n independent powers, noise exceeds T m with
-///          probability (1 + T / n)^-n.
 [[nodiscard]] std::optional<HumLine> findHum(const ResidualSpectrum& spectrum, double resolutionHz);
 
 } // namespace sinewright::core

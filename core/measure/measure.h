@@ -1,15 +1,16 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
-#include <cstddef>
-#include <span>
-
 #include "core/measure/reading.h"
 #include "core/units.h"
 
+#include <cstddef>
+#include <span>
+
 namespace sinewright::core {
 
-inline constexpr std::size_t kLongestReading = std::size_t{1} << 24; ///< samples that measure() takes at the most
+inline constexpr std::size_t kLongestReading = std::size_t{1}
+                                               << 24; ///< samples that measure() takes at the most
 
 /// One reading from one stretch of one channel.
 ///
@@ -21,6 +22,7 @@ inline constexpr std::size_t kLongestReading = std::size_t{1} << 24; ///< sample
 /// @param settings  as documented there; the band's upper edge is limited to half the rate.
 /// @return          Status and figures; `startS` is 0, for the caller to fill in.
 /// @thread          any; pure but for FFTW's plan cache, which is locked.   @realtime  no: allocates.
-[[nodiscard]] Reading measure(std::span<const double> samples, SampleRate rate, const MeasureSettings& settings);
+[[nodiscard]] Reading
+measure(std::span<const double> samples, SampleRate rate, const MeasureSettings& settings);
 
 } // namespace sinewright::core

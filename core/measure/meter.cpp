@@ -8,6 +8,7 @@
 #include "core/measure/stretch_workspace.h"
 #include "core/measure/tone_blocks.h"
 #include "core/measure/tone_search.h"
+#include "core/signal/noise_level.h"
 
 #include <algorithm>
 #include <cassert>
@@ -35,6 +36,12 @@ constexpr double kLowestToneHz = 10.0;     ///< below it is drift, not a tone to
 constexpr double kToneProminence = 100.0;
 constexpr double kLocalProminence = 30.0;
 constexpr double kHopeless = 20.0;
+
+/// That one strongest line of noise stands so high: more than a lifetime of readings.
+constexpr double kLocalChance = 1e-8;
+
+/// A line so far below the largest sample may be no more than rounding.
+constexpr double kRounding = 1e-13;
 
 constexpr double kRivalRatio = 0.5; ///< amplitude: a second line within 6 dB
 constexpr double kDcOffset = 0.01;  ///< 1.0 = full scale
@@ -115,7 +122,7 @@ private:
         if (m_model.periods < kFewestPeriods * (1.0 - kPeriodsTolerance)) {
             return ReadingStatus::TooShort;
         }
-        if (!(std::abs(m_model.phasors[0]) > 0.0)) {
+        if (!(std::abs(m_model.phasors[0]) > kRounding * m_statistics.peak)) {
             return ReadingStatus::NoTone;
         }
         std::shared_ptr<const CycleView> cycle;
@@ -172,15 +179,20 @@ private:
         const double power = amplitude * amplitude / 2.0;
         const double median =
             spectrum.medianPowerFs2(binsOf(m_settings.band.lowHz), binsOf(m_settings.band.highHz));
-        const double local = spectrum.localPowerFs2(m_model.periods);
+        // Beside it means within an octave: further off a slope of the noise would tell.
+        const double periods = m_model.periods;
+        const auto local = spectrum.localDensity(periods, periods / 2.0, 2.0 * periods);
+        const double needed =
+            local.independent > 0.0
+                ? std::max(kLocalProminence, chanceRatio(kLocalChance, local.independent))
+                : 0.0;
         return power > 0.0 && power >= kToneProminence * median &&
-               power >= kLocalProminence * local && !hasRival(spectrum, amplitude);
+               power >= needed * local.powerFs2 && !hasRival(spectrum, amplitude);
     }
 
     /// A second line, no harmonic of the first, within 6 dB of it.
     [[nodiscard]] bool hasRival(const ResidualSpectrum& spectrum, double amplitude) const
     {
-        const double periods = m_model.periods;
         const auto first = static_cast<std::size_t>(
             std::max(2.0, std::ceil(binsOf(kLowestToneHz) / (spectrum.position(1)))));
         // Between two bins a line shows a tenth of an amplitude less power than it has at the least.
@@ -192,10 +204,7 @@ private:
             if (spectrum.powerFs2(index) < worthALook) {
                 continue;
             }
-            const double order = std::max(1.0, std::round(spectrum.position(index) / periods));
-            constexpr double kLobeBins = 2.0;
-            if (std::abs(spectrum.position(index) - order * periods) <= kLobeBins ||
-                spectrum.isInGap(spectrum.position(index), 1.0)) {
+            if (spectrum.isNearMultiple(spectrum.position(index), 1.0)) {
                 continue;
             }
             if (spectrum.lineAt(index).amplitude >= kRivalRatio * amplitude) {

@@ -14,14 +14,16 @@ enum class Weighting {
 };
 
 /// Measuring band [Hz], 0 <= lowHz < highHz; the upper edge is limited to half the sample rate where it is used.
-struct Band {
+struct Band
+{
     double lowHz = 20.0;
     double highHz = 20000.0;
     friend bool operator==(const Band&, const Band&) = default;
 };
 
 /// What the user may choose about a reading.
-struct MeasureSettings {
+struct MeasureSettings
+{
     Band band;
     int harmonicCount = 10; ///< highest order counted, 2 .. 32
     Weighting weighting = Weighting::None;
@@ -49,12 +51,14 @@ enum class Warning {
 };
 
 /// One harmonic, relative to the fundamental.
-struct HarmonicReading {
+struct HarmonicReading
+{
     int order = 2;            ///< 2 ..
     double frequencyHz = 0.0; ///< order times the fitted frequency
     double ratio = 0.0;       ///< amplitude over the fundamental's, >= 0
     double phaseDeg = 0.0;    ///< (-180, 180], sine convention, fundamental's phase taken out
-    bool inBand = true;       ///< false above the band's upper edge; such a harmonic does not count for THD
+    bool inBand =
+        true; ///< false above the band's upper edge; such a harmonic does not count for THD
 };
 
 /// One set of figures from one stretch of signal.
@@ -62,7 +66,8 @@ struct HarmonicReading {
 /// A figure that cannot be had is empty, never NaN and never a made-up zero. With a status other than Ok or Overload
 /// all figures but `dcFs` and `peakFs` are empty. Ratios are amplitude ratios; percent and dB are made where they are
 /// shown.
-struct Reading {
+struct Reading
+{
     ReadingStatus status = ReadingStatus::TooShort;
     std::vector<Warning> warnings; ///< each at most once, in the order of the enumeration
 
@@ -78,14 +83,17 @@ struct Reading {
 
     std::optional<double> thdRatio;  ///< THD_F: harmonics 2..K in band over the fundamental
     std::optional<double> thdRRatio; ///< the same over the total rms in band
-    std::optional<double> thdnRatio; ///< all in band but the fundamental, over the total rms in band
+    std::optional<double>
+        thdnRatio; ///< all in band but the fundamental, over the total rms in band
     std::optional<double> sinadDb;
     std::optional<double> snrDb;
-    std::optional<double> noiseDbfs; ///< minus infinity is not a figure: empty when no noise is seen
+    std::optional<double>
+        noiseDbfs; ///< minus infinity is not a figure: empty when no noise is seen
 
     std::vector<HarmonicReading> harmonics; ///< ascending orders from 2, below half the sample rate
 
-    std::optional<double> mainsHumDbc; ///< strongest line of the 50 or 60 Hz family; empty when none stands out
+    std::optional<double>
+        mainsHumDbc; ///< strongest line of the 50 or 60 Hz family; empty when none stands out
 };
 
 } // namespace sinewright::core

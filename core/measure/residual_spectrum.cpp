@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "core/measure/residual_spectrum.h"
 
+#include "core/signal/noise_level.h"
 #include "core/signal/weighting.h"
 
 #include <algorithm>
@@ -16,19 +17,8 @@ namespace {
 constexpr double kPi = std::numbers::pi;
 constexpr double kTaperShare = 1.0 / 16.0;
 
-/// The median of exponentially distributed powers is ln 2 times their mean.
-constexpr double kMedianToMean = 1.0 / std::numbers::ln2;
-
-constexpr std::size_t kLocalIndices = 64;    ///< wanted on both sides together for a local density
-constexpr std::size_t kLocalReach = 512;     ///< how far they are looked for on each side
-constexpr std::size_t kMedianIndices = 4096; ///< enough for a median good to 2.5 %
-
-double median(std::vector<double>& values)
-{
-    const auto middle = values.begin() + static_cast<std::ptrdiff_t>(values.size() / 2);
-    std::nth_element(values.begin(), middle, values.end());
-    return *middle;
-}
+constexpr std::size_t kLocalIndices = 64;   ///< wanted on both sides together for a local density
+constexpr std::ptrdiff_t kLocalReach = 512; ///< how far they are looked for on each side
 
 } // namespace
 
@@ -95,36 +85,47 @@ bool ResidualSpectrum::isInGap(double bins, double extraBins) const
            (above != m_lines.begin() && bins - *(above - 1) <= reach) || bins <= reach;
 }
 
-double ResidualSpectrum::localPowerFs2(double bins) const
+bool ResidualSpectrum::isNearMultiple(double bins, double extraBins) const
 {
-    const std::size_t middle = indexAt(bins);
+    return std::abs(std::remainder(bins, m_lines.front())) <= m_gapBins + extraBins;
+}
+
+ResidualSpectrum::Density
+ResidualSpectrum::localDensity(double bins, double lowBins, double highBins) const
+{
+    const auto middle = static_cast<std::ptrdiff_t>(indexAt(bins));
+    const auto last = static_cast<std::ptrdiff_t>(size()) - 2; // half the rate itself is left out
     std::vector<double> powers;
     powers.reserve(kLocalIndices + 2);
-    for (std::size_t step = 1; step <= kLocalReach && powers.size() < kLocalIndices; ++step) {
-        if (middle + step + 1 < size() && !isInGap(position(middle + step))) {
-            powers.push_back(powerFs2(middle + step));
+    const auto collect = [&](std::ptrdiff_t at) {
+        const auto index = static_cast<std::size_t>(std::clamp<std::ptrdiff_t>(at, 0, last));
+        const double place = position(index);
+        if (at > 0 && at <= last && place >= lowBins && place <= highBins && !isInGap(place)) {
+            powers.push_back(powerFs2(index));
         }
-        if (middle > step && !isInGap(position(middle - step))) {
-            powers.push_back(powerFs2(middle - step));
-        }
+    };
+    for (std::ptrdiff_t step = 1; step <= kLocalReach && powers.size() < kLocalIndices; ++step) {
+        collect(middle + step);
+        collect(middle - step);
     }
-    return powers.empty() ? 0.0 : median(powers) * kMedianToMean;
+    if (powers.empty()) {
+        return {};
+    }
+    const double independent = kMedianEfficiency * static_cast<double>(powers.size());
+    return {meanFromMedian(powers), independent};
+}
+
+double ResidualSpectrum::localPowerFs2(double bins) const
+{
+    return localDensity(bins, 0.0, static_cast<double>(m_samples)).powerFs2;
 }
 
 double ResidualSpectrum::medianPowerFs2(double lowBins, double highBins) const
 {
+    // The gaps are few beside the rest and empty rather than full: they may stay in.
     const std::size_t first = std::max<std::size_t>(indexAt(lowBins), 1);
     const std::size_t end = std::min(indexAt(highBins) + 1, size() - 1);
-    std::vector<double> powers;
-    if (end > first) {
-        const std::size_t stride = (end - first + kMedianIndices - 1) / kMedianIndices;
-        for (std::size_t index = first; index < end; index += stride) {
-            if (!isInGap(position(index))) {
-                powers.push_back(powerFs2(index));
-            }
-        }
-    }
-    return powers.empty() ? 0.0 : median(powers) * kMedianToMean;
+    return end > first ? meanFromMedian(m_powers.subspan(first, end - first)) * m_powerScale : 0.0;
 }
 
 double ResidualSpectrum::bandPowerFs2(double lowBins,

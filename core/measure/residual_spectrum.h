@@ -54,8 +54,17 @@ public:
     /// Largest powerFs2() of all.
     [[nodiscard]] double largestPowerFs2() const;
 
-    /// Expected mean square an index of the noise about a place: from the median of the nearest indices that no line
-    /// occupies. 0 when there are none.
+    /// What noise is expected to put into one index, from the median of nearby indices that no line occupies.
+    struct Density
+    {
+        double powerFs2 = 0.0;    ///< mean square an index; 0 when there are no such indices
+        double independent = 0.0; ///< of how many independent powers the mean would be as good
+    };
+
+    /// About a place, from the nearest indices within a range [bins].
+    [[nodiscard]] Density localDensity(double bins, double lowBins, double highBins) const;
+
+    /// About a place, from the nearest indices wherever they lie.
     [[nodiscard]] double localPowerFs2(double bins) const;
 
     /// Median of the in-band power an index, brought to the mean of noise.
@@ -80,6 +89,10 @@ public:
 
     /// True within `extraBins` of a gap.
     [[nodiscard]] bool isInGap(double bins, double extraBins = 0.0) const;
+
+    /// True where the fundamental or any multiple of it lies within a gap and `extraBins`, whether it was taken out or
+    /// not.
+    [[nodiscard]] bool isNearMultiple(double bins, double extraBins) const;
 
 private:
     [[nodiscard]] std::complex<double> smooth(std::size_t index) const;

@@ -74,9 +74,10 @@ struct ToneBlocks::Tables
             const Complex turn = unitPhasor(turnsPerSample * u);
             const auto row = static_cast<Eigen::Index>(n);
             double power = 1.0;
-            for (Eigen::Index p = 0; p < kCubic; ++p, power *= v) {
+            for (Eigen::Index p = 0; p < kCubic; ++p) {
                 columns(row, 2 * p) = power * turn.real();
                 columns(row, 2 * p + 1) = -power * turn.imag();
+                power *= v;
             }
             Complex harmonic = turn;
             for (Eigen::Index column = 2 * kCubic; column + 1 < columns.cols(); column += 2) {

@@ -1,11 +1,11 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "core/measure/tone_search.h"
 
+#include "core/signal/noise_level.h"
+
 #include <algorithm>
 #include <cmath>
 #include <limits>
-#include <numbers>
-#include <vector>
 
 #include <Eigen/Core>
 
@@ -13,26 +13,17 @@ namespace sinewright::core {
 
 namespace {
 
-constexpr std::size_t kMedianIndices = 4096; ///< enough for a median good to 2.5 %
-
-double medianPower(const StretchTransform& transform, double lowBins, double highBins)
+/// Mean power of the noise about a band.
+double noisePower(const StretchTransform& transform, double lowBins, double highBins)
 {
-    const double lastIndex = static_cast<double>(transform.size()) - 1.0;
-    const auto first = static_cast<std::size_t>(
-        std::clamp(std::ceil(lowBins / transform.binsPerIndex()), 0.0, lastIndex));
-    const auto last = static_cast<std::size_t>(
-        std::clamp(std::floor(highBins / transform.binsPerIndex()), 0.0, lastIndex));
-    const std::size_t stride = (last - std::min(first, last)) / kMedianIndices + 1;
-    std::vector<double> powers;
-    for (std::size_t index = first; index <= last; index += stride) {
-        powers.push_back(transform.powers()[index]);
-    }
-    if (powers.empty()) {
-        return 0.0;
-    }
-    const auto middle = powers.begin() + static_cast<std::ptrdiff_t>(powers.size() / 2);
-    std::nth_element(powers.begin(), middle, powers.end());
-    return *middle / std::numbers::ln2;
+    const auto indexAt = [&transform](double bins) {
+        const double index = std::round(bins / transform.binsPerIndex());
+        return static_cast<std::size_t>(
+            std::clamp(index, 0.0, static_cast<double>(transform.size()) - 1.0));
+    };
+    const std::size_t first = indexAt(lowBins);
+    const std::size_t last = std::max(first, indexAt(highBins));
+    return meanFromMedian(transform.powers().subspan(first, last - first + 1));
 }
 
 } // namespace
@@ -66,7 +57,7 @@ strongestLine(const StretchTransform& transform, double lowestBins, double lowBi
     const double offset =
         curvature < 0.0 ? std::clamp((before - after) / (2.0 * curvature), -0.5, 0.5) : 0.0;
     line.bins = transform.position(best) + offset * transform.binsPerIndex();
-    const double noise = medianPower(transform, lowBins, highBins);
+    const double noise = noisePower(transform, lowBins, highBins);
     line.prominence = noise > 0.0 ? line.power / noise : std::numeric_limits<double>::infinity();
     return line;
 }

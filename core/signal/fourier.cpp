@@ -19,6 +19,13 @@ std::mutex& plannerMutex()
     return mutex;
 }
 
+fftw_plan makePlan(std::size_t length, double* input, fftw_complex* output)
+{
+    const std::scoped_lock lock(plannerMutex());
+    return fftw_plan_dft_r2c_1d(
+        static_cast<int>(length), input, output, FFTW_ESTIMATE | FFTW_PRESERVE_INPUT);
+}
+
 } // namespace
 
 struct RealFourier::Plan
@@ -34,12 +41,8 @@ struct RealFourier::Plan
         , input(fftw_alloc_real(length))
         , output(fftw_alloc_complex(length / 2 + 1))
         , powers(fftw_alloc_real(length / 2 + 1))
-        , plan(nullptr)
-    {
-        const std::scoped_lock lock(plannerMutex());
-        plan = fftw_plan_dft_r2c_1d(
-            static_cast<int>(length), input, output, FFTW_ESTIMATE | FFTW_PRESERVE_INPUT);
-    }
+        , plan(makePlan(length, input, output))
+    {}
 
     ~Plan()
     {

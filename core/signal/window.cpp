@@ -123,7 +123,8 @@ WindowTransform::WindowTransform(const CosineWindow& window, std::size_t count) 
 double WindowTransform::value(double bins) const
 {
     const auto count = static_cast<double>(m_count);
-    const auto last = static_cast<double>(m_terms.size() / 2);
+    const std::size_t middle = m_terms.size() / 2;
+    const auto last = static_cast<double>(middle);
     double sum = 0.0;
     for (std::size_t j = 0; j < m_terms.size(); ++j) {
         sum += m_terms[j] * dirichlet(bins - static_cast<double>(j) + last, count);
@@ -134,7 +135,8 @@ double WindowTransform::value(double bins) const
 double WindowTransform::slope(double bins) const
 {
     const auto count = static_cast<double>(m_count);
-    const auto last = static_cast<double>(m_terms.size() / 2);
+    const std::size_t middle = m_terms.size() / 2;
+    const auto last = static_cast<double>(middle);
     double sum = 0.0;
     for (std::size_t j = 0; j < m_terms.size(); ++j) {
         sum += m_terms[j] * dirichletSlope(bins - static_cast<double>(j) + last, count);

@@ -1,26 +1,29 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 
+#include "core/measure/reading.h"
+
 #include <deque>
 #include <optional>
 #include <vector>
 
-#include "core/measure/reading.h"
-
 namespace sinewright::core {
 
 /// One moment of the trim trend.
-struct TrendPoint {
-    double timeS = 0.0;               ///< [s] from the start of the source, middle of the reading
-    std::optional<double> thdRatio;   ///< empty where the reading had none
+struct TrendPoint
+{
+    double timeS = 0.0;             ///< [s] from the start of the source, middle of the reading
+    std::optional<double> thdRatio; ///< empty where the reading had none
     std::optional<double> thdnRatio;
     std::optional<double> levelDbfs;
-    bool afterGap = false;            ///< samples were lost before this point: do not join it to the one before
+    bool afterGap =
+        false; ///< samples were lost before this point: do not join it to the one before
 };
 
 /// The best steady full reading so far.
-struct BestReading {
-    double timeS = 0.0;     ///< [s] middle of the reading
+struct BestReading
+{
+    double timeS = 0.0; ///< [s] middle of the reading
     double thdRatio = 0.0;
     std::optional<double> thdnRatio;
     std::optional<double> levelDbfs;
@@ -29,7 +32,8 @@ struct BestReading {
 };
 
 /// What the trend looks like at one moment; immutable once handed out.
-struct TrendSnapshot {
+struct TrendSnapshot
+{
     std::vector<TrendPoint> points; ///< ascending in time, spanning at most the trend's length
     std::optional<BestReading> best;
 };
@@ -37,7 +41,8 @@ struct TrendSnapshot {
 /// THD, THD+N and level against time, with the best so far.
 ///
 /// @thread  one; not synchronised.
-class Trend final {
+class Trend final
+{
 public:
     static constexpr double kSpanS = 180.0; ///< [s] how much is kept: the last three minutes
 

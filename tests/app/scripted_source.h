@@ -105,7 +105,8 @@ private:
     {
         const double angle = 2.0 * std::numbers::pi * m_script->frequencyHz *
                              static_cast<double>(m_frame++) / m_script->rateHz;
-        const double tone = 0.5 * (std::sin(angle) + m_script->secondHarmonic * std::sin(2 * angle));
+        const double tone =
+            0.5 * (std::sin(angle) + m_script->secondHarmonic * std::sin(2 * angle));
         const double octave = 0.25 * std::sin(2.0 * angle);
         for (int channel = 0; channel < m_script->channels; ++channel) {
             block.push_back(static_cast<float>(channel == 0 ? tone : octave));

@@ -1,7 +1,5 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "app/bench_session.h"
-#include "tests/app/scripted_source.h"
-#include "tests/support/virtual_card.h"
 
 #include <QSignalSpy>
 #include <QTemporaryDir>
@@ -11,6 +9,9 @@
 #include <map>
 #include <numbers>
 #include <set>
+
+#include "tests/app/scripted_source.h"
+#include "tests/support/virtual_card.h"
 
 using namespace sinewright;
 using namespace sinewright::app;
@@ -108,7 +109,8 @@ private slots:
         const auto quick = std::make_shared<Script>();
         quick->frequencyHz = 3000.0;
         BenchSession session(
-            [slow, quick](const SourceSpec& spec, const std::shared_ptr<const audio::DemoTrimmer>&) {
+            [slow, quick](const SourceSpec& spec,
+                          const std::shared_ptr<const audio::DemoTrimmer>&) {
                 return std::make_unique<ScriptedSource>(spec.name == u"quick" ? quick : slow);
             },
             noCards);
@@ -121,7 +123,8 @@ private slots:
         QTRY_VERIFY_WITH_TIMEOUT(hasFullReading(session), kPatienceMs);
         QCOMPARE(session.status().source.name, u"quick"_s);
         QCOMPARE(slow->opened.load(), 1);
-        QCOMPARE_LE(std::abs(session.newestFrame()->full->frequencyHz.value_or(0.0) - 3000.0), 1e-3);
+        QCOMPARE_LE(std::abs(session.newestFrame()->full->frequencyHz.value_or(0.0) - 3000.0),
+                    1e-3);
         for (const auto& arguments : std::as_const(spy)) {
             const auto status = arguments.first().value<SessionStatus>();
             QVERIFY(status.source.name == u"quick" || status.condition == Condition::Starting);
@@ -134,7 +137,8 @@ private slots:
         const auto second = std::make_shared<Script>();
         second->frequencyHz = 5000.0;
         BenchSession session(
-            [first, second](const SourceSpec& spec, const std::shared_ptr<const audio::DemoTrimmer>&) {
+            [first, second](const SourceSpec& spec,
+                            const std::shared_ptr<const audio::DemoTrimmer>&) {
                 return std::make_unique<ScriptedSource>(spec.name == u"first" ? first : second);
             },
             noCards);
@@ -145,7 +149,8 @@ private slots:
             QVERIFY(!session.newestFrame());
             QTRY_VERIFY_WITH_TIMEOUT(session.newestFrame(), kPatienceMs);
             const auto frame = session.newestFrame();
-            QVERIFY(!frame->quick.frequencyHz || std::abs(*frame->quick.frequencyHz - 5000.0) < 1.0);
+            QVERIFY(!frame->quick.frequencyHz ||
+                    std::abs(*frame->quick.frequencyHz - 5000.0) < 1.0);
         }
         QCOMPARE(first->opened.load(), 3);
         QCOMPARE(first->stopped.load(), 3);
@@ -181,7 +186,8 @@ private slots:
         constexpr int kRate = 48000;
         std::vector<float> tone(kRate / 2);
         for (std::size_t i = 0; i < tone.size(); ++i) {
-            tone[i] = static_cast<float>(0.5 * std::sin(2.0 * std::numbers::pi * 1000.0 * static_cast<double>(i) / kRate));
+            tone[i] = static_cast<float>(
+                0.5 * std::sin(2.0 * std::numbers::pi * 1000.0 * static_cast<double>(i) / kRate));
         }
         QVERIFY(writeFloatWav(file, kRate, {tone}));
         BenchSession session(app::makeSource, noCards);
@@ -208,7 +214,10 @@ private slots:
         script->condition = audio::SourceCondition::Running;
         QTRY_VERIFY(session.status().condition == Condition::Running);
         QCOMPARE(conditionsOf(spy),
-                 (std::vector{Condition::Starting, Condition::Running, Condition::Lost, Condition::Silent,
+                 (std::vector{Condition::Starting,
+                              Condition::Running,
+                              Condition::Lost,
+                              Condition::Silent,
                               Condition::Running}));
     }
 
@@ -229,7 +238,9 @@ private slots:
     {
         BenchSession session(scriptedFactory(std::make_shared<Script>()), noCards);
         session.open(namedCard("usb"));
-        const auto best = [&session] { return session.newestFrame()->trend->best; };
+        const auto best = [&session] {
+            return session.newestFrame()->trend->best;
+        };
         QTRY_VERIFY_WITH_TIMEOUT(session.newestFrame() && best(), kPatienceMs);
         const double resetAtS = session.newestFrame()->timeS;
         session.resetBest();
@@ -272,7 +283,8 @@ private slots:
         QTRY_VERIFY_WITH_TIMEOUT(hasFullReading(session), kPatienceMs);
         const double before = session.newestFrame()->quick.levelDbfs.value_or(0.0);
         session.setTrimmer(350.0);
-        QTRY_VERIFY_WITH_TIMEOUT(session.newestFrame()->quick.levelDbfs.value_or(-99.0) > before + 0.3, kPatienceMs);
+        QTRY_VERIFY_WITH_TIMEOUT(
+            session.newestFrame()->quick.levelDbfs.value_or(-99.0) > before + 0.3, kPatienceMs);
     }
 
     void cards_areListedAwayFromTheWindowsThread()
@@ -281,7 +293,8 @@ private slots:
         BenchSession session(scriptedFactory(std::make_shared<Script>()),
                              [&listedOn]() -> core::Result<std::vector<audio::CardInfo>> {
                                  listedOn = QThread::currentThread();
-                                 return std::vector<audio::CardInfo>{{.hostApi = "ALSA", .name = "usb", .ratesHz = {}}};
+                                 return std::vector<audio::CardInfo>{
+                                     {.hostApi = "ALSA", .name = "usb", .ratesHz = {}}};
                              });
         QSignalSpy spy(&session, &BenchSession::cardsListed);
         session.wantCards();

@@ -19,7 +19,7 @@ core::Result<Invocation> parsed(const QString& line)
     return parseCommandLine(line.split(u' ', Qt::SkipEmptyParts));
 }
 
-template<typename T>
+template <typename T>
 std::optional<T> parsedAs(const QString& line)
 {
     const auto invocation = parsed(line);
@@ -43,7 +43,8 @@ std::set<QString> optionsIn(const QString& text)
 
 } // namespace
 
-class TestCommandLine : public QObject {
+class TestCommandLine : public QObject
+{
     Q_OBJECT
 
 private slots:
@@ -62,15 +63,27 @@ private slots:
         QTest::addColumn<int>("kind");
         QTest::addColumn<QString>("name");
         QTest::addColumn<QString>("hostApi");
-        const auto row = [](const char* tag, const char* word, ui::SourceKind kind, const char* name, const char* host) {
-            QTest::newRow(tag) << QString::fromLatin1(word) << static_cast<int>(kind) << QString::fromLatin1(name)
-                               << QString::fromLatin1(host);
+        const auto row = [](const char* tag,
+                            const char* word,
+                            ui::SourceKind kind,
+                            const char* name,
+                            const char* host) {
+            QTest::newRow(tag) << QString::fromLatin1(word) << static_cast<int>(kind)
+                               << QString::fromLatin1(name) << QString::fromLatin1(host);
         };
         row("command contract: demo", "demo", ui::SourceKind::Demo, "", "");
         row("command contract: card", "card", ui::SourceKind::Card, "", "");
         row("command contract: card:NAME", "card:usb", ui::SourceKind::Card, "usb", "");
-        row("a name with colons in it", "card:usb (hw:1,0)", ui::SourceKind::Card, "usb (hw:1,0)", "");
-        row("host API before the name", "card:JACK::system", ui::SourceKind::Card, "system", "JACK");
+        row("a name with colons in it",
+            "card:usb (hw:1,0)",
+            ui::SourceKind::Card,
+            "usb (hw:1,0)",
+            "");
+        row("host API before the name",
+            "card:JACK::system",
+            ui::SourceKind::Card,
+            "system",
+            "JACK");
         row("default input of a host API", "card:ALSA::", ui::SourceKind::Card, "", "ALSA");
         row("command contract: FILE", "take.wav", ui::SourceKind::Take, "take.wav", "");
         row("a file called demo", "./demo", ui::SourceKind::Take, "./demo", "");
@@ -95,7 +108,8 @@ private slots:
 
     void window_takesSourceRateAndChannel()
     {
-        const auto window = parsedAs<WindowOptions>(u"--source card:usb --rate 192000 --channel 2"_s);
+        const auto window =
+            parsedAs<WindowOptions>(u"--source card:usb --rate 192000 --channel 2"_s);
         QVERIFY(window && window->source);
         QCOMPARE(window->source->rateHz, 192000.0);
         QCOMPARE(window->source->channel, 2);
@@ -118,9 +132,9 @@ private slots:
 
     void measure_takesEveryOption()
     {
-        const auto measure =
-            parsedAs<MeasureOptions>(u"measure --json take.wav --channel 3 --start 1.5 --seconds 2.25 --band "
-                                     "10:80000 --harmonics 7 --weighting 468 --full-scale 4.2"_s);
+        const auto measure = parsedAs<MeasureOptions>(
+            u"measure --json take.wav --channel 3 --start 1.5 --seconds 2.25 --band "
+            "10:80000 --harmonics 7 --weighting 468 --full-scale 4.2"_s);
         QVERIFY(measure);
         QCOMPARE(measure->asJson, true);
         QCOMPARE(measure->source.name, u"take.wav"_s);
@@ -132,7 +146,8 @@ private slots:
         QCOMPARE(measure->settings.harmonicCount, 7);
         QVERIFY(measure->settings.weighting == core::Weighting::Itu468);
         QCOMPARE(measure->settings.fullScaleVrms.value_or(0.0), 4.2);
-        const auto demo = parsedAs<MeasureOptions>(u"measure demo --rate 48000 --weighting a --trimmer 300"_s);
+        const auto demo =
+            parsedAs<MeasureOptions>(u"measure demo --rate 48000 --weighting a --trimmer 300"_s);
         QVERIFY(demo);
         QCOMPARE(demo->source.rateHz, 48000.0);
         QCOMPARE(demo->trimmerOhm, 300.0);
@@ -141,9 +156,10 @@ private slots:
 
     void picture_takesEveryOption()
     {
-        const auto picture = parsedAs<PictureOptions>(
-            u"--picture out.png --source demo --rate 192000 --after 12 --size 1920x1080 --theme dusk --page warm-up "
-            "--scale 2 --trimmer 340,352.5 --report-load"_s);
+        const auto picture =
+            parsedAs<PictureOptions>(u"--picture out.png --source demo --rate 192000 --after 12 "
+                                     u"--size 1920x1080 --theme dusk --page warm-up "
+                                     "--scale 2 --trimmer 340,352.5 --report-load"_s);
         QVERIFY(picture);
         QCOMPARE(picture->file, u"out.png"_s);
         QCOMPARE(picture->source.rateHz, 192000.0);
@@ -178,7 +194,8 @@ private slots:
         QTest::newRow("program") << u"--help"_s << static_cast<int>(Topic::Program);
         QTest::newRow("short") << u"-h"_s << static_cast<int>(Topic::Program);
         QTest::newRow("measure") << u"measure --help"_s << static_cast<int>(Topic::Measure);
-        QTest::newRow("measure, among wrong words") << u"measure --nonsense --help"_s << static_cast<int>(Topic::Measure);
+        QTest::newRow("measure, among wrong words")
+            << u"measure --nonsense --help"_s << static_cast<int>(Topic::Measure);
         QTest::newRow("cards") << u"cards --help"_s << static_cast<int>(Topic::Cards);
     }
 
@@ -198,14 +215,34 @@ private slots:
         QTest::addColumn<QStringList>("options");
         using Topic = HelpRequest::Topic;
         QTest::newRow("program") << static_cast<int>(Topic::Program)
-                                 << QStringList{u"after"_s, u"channel"_s, u"help"_s, u"json"_s, u"page"_s,
-                                                u"picture"_s, u"rate"_s, u"report-load"_s, u"scale"_s, u"size"_s,
-                                                u"source"_s, u"theme"_s, u"trimmer"_s, u"version"_s};
+                                 << QStringList{u"after"_s,
+                                                u"channel"_s,
+                                                u"help"_s,
+                                                u"json"_s,
+                                                u"page"_s,
+                                                u"picture"_s,
+                                                u"rate"_s,
+                                                u"report-load"_s,
+                                                u"scale"_s,
+                                                u"size"_s,
+                                                u"source"_s,
+                                                u"theme"_s,
+                                                u"trimmer"_s,
+                                                u"version"_s};
         QTest::newRow("measure") << static_cast<int>(Topic::Measure)
-                                 << QStringList{u"band"_s, u"channel"_s, u"full-scale"_s, u"harmonics"_s, u"help"_s,
-                                                u"json"_s, u"rate"_s, u"seconds"_s, u"start"_s, u"trimmer"_s,
+                                 << QStringList{u"band"_s,
+                                                u"channel"_s,
+                                                u"full-scale"_s,
+                                                u"harmonics"_s,
+                                                u"help"_s,
+                                                u"json"_s,
+                                                u"rate"_s,
+                                                u"seconds"_s,
+                                                u"start"_s,
+                                                u"trimmer"_s,
                                                 u"weighting"_s};
-        QTest::newRow("cards") << static_cast<int>(Topic::Cards) << QStringList{u"json"_s, u"rate"_s, u"source"_s};
+        QTest::newRow("cards") << static_cast<int>(Topic::Cards)
+                               << QStringList{u"json"_s, u"rate"_s, u"source"_s};
     }
 
     void help_namesExactlyTheOptionsThereAre()
@@ -214,7 +251,8 @@ private slots:
         QFETCH(QStringList, options);
         const Outcome help = runHelp({static_cast<HelpRequest::Topic>(topic)});
         QVERIFY(help.status == ExitStatus::Good);
-        QCOMPARE(optionsIn(QString::fromStdString(help.output)), (std::set<QString>(options.begin(), options.end())));
+        QCOMPARE(optionsIn(QString::fromStdString(help.output)),
+                 (std::set<QString>(options.begin(), options.end())));
     }
 
     void help_fitsATerminal()
@@ -233,7 +271,8 @@ private slots:
     {
         QVERIFY(parsedAs<VersionRequest>(u"--version"_s));
         const QString line = QString::fromStdString(runVersion().output);
-        QVERIFY2(QRegularExpression(u"^sinewright \\d+\\.\\d+\\.\\d+\\n$"_s).match(line).hasMatch(), qPrintable(line));
+        QVERIFY2(QRegularExpression(u"^sinewright \\d+\\.\\d+\\.\\d+\\n$"_s).match(line).hasMatch(),
+                 qPrintable(line));
     }
 
     void wrongWords_areSaidInOneLineWithTheWayToHelp_data()

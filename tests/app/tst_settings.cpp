@@ -12,7 +12,8 @@ using namespace sinewright;
 using namespace sinewright::app;
 using namespace Qt::StringLiterals;
 
-class TestSettings : public QObject {
+class TestSettings : public QObject
+{
     Q_OBJECT
 
 private:
@@ -34,8 +35,11 @@ private:
         values.view.page = ui::Page::Network;
         values.view.pictureScale = 2;
         values.view.geometry = QByteArray("\x00\x01\xff,;\"geometry", 14);
-        values.source = SourceSpec{
-            .kind = ui::SourceKind::Card, .name = u"usb, left = 1"_s, .hostApi = u"ALSA"_s, .rateHz = 88200.0, .channel = 2};
+        values.source = SourceSpec{.kind = ui::SourceKind::Card,
+                                   .name = u"usb, left = 1"_s,
+                                   .hostApi = u"ALSA"_s,
+                                   .rateHz = 88200.0,
+                                   .channel = 2};
         values.measure.band = {.lowHz = 0.1, .highHz = 22050.3};
         values.measure.harmonicCount = 5;
         values.measure.weighting = core::Weighting::Itu468;
@@ -116,22 +120,51 @@ private slots:
         QTest::addColumn<QByteArray>("line");
         QTest::addColumn<QByteArray>("section");
         QTest::addColumn<std::function<bool(const Remembered&)>>("holds");
-        const auto row = [](const char* tag, const char* section, const char* line, std::function<bool(const Remembered&)> holds) {
+        const auto row = [](const char* tag,
+                            const char* section,
+                            const char* line,
+                            std::function<bool(const Remembered&)> holds) {
             QTest::newRow(tag) << QByteArray(line) << QByteArray(section) << std::move(holds);
         };
-        row("harmonics too many", "measure", "harmonicCount=99", [](const Remembered& r) { return r.measure.harmonicCount == 32; });
-        row("harmonics no number", "measure", "harmonicCount=ten", [](const Remembered& r) { return r.measure.harmonicCount == 10; });
-        row("band upside down", "measure", "bandLowHz=30000", [](const Remembered& r) { return r.measure.band == core::Band(); });
-        row("band not a number", "measure", "bandLowHz=nan", [](const Remembered& r) { return r.measure.band == core::Band(); });
-        row("full scale negative", "measure", "fullScaleVrms=-1", [](const Remembered& r) { return !r.measure.fullScaleVrms; });
-        row("full scale infinite", "measure", "fullScaleVrms=inf", [](const Remembered& r) { return !r.measure.fullScaleVrms; });
-        row("weighting unknown", "measure", "weighting=z", [](const Remembered& r) { return r.measure.weighting == core::Weighting::None; });
-        row("theme unknown", "view", "theme=neon", [](const Remembered& r) { return r.view.theme == ui::ThemeName::Paper; });
-        row("page unknown", "view", "page=7", [](const Remembered& r) { return r.view.page == ui::Page::Trim; });
-        row("picture scale too big", "view", "pictureScale=9", [](const Remembered& r) { return r.view.pictureScale == 2; });
-        row("channel zero", "source", "channel=0", [](const Remembered& r) { return r.source.channel == 1; });
-        row("demo rate too low", "source", "rateHz=8000", [](const Remembered& r) { return r.source.rateHz == 44100.0; });
-        row("source empty", "source", "name=", [](const Remembered& r) { return r.source == SourceSpec(); });
+        row("harmonics too many", "measure", "harmonicCount=99", [](const Remembered& r) {
+            return r.measure.harmonicCount == 32;
+        });
+        row("harmonics no number", "measure", "harmonicCount=ten", [](const Remembered& r) {
+            return r.measure.harmonicCount == 10;
+        });
+        row("band upside down", "measure", "bandLowHz=30000", [](const Remembered& r) {
+            return r.measure.band == core::Band();
+        });
+        row("band not a number", "measure", "bandLowHz=nan", [](const Remembered& r) {
+            return r.measure.band == core::Band();
+        });
+        row("full scale negative", "measure", "fullScaleVrms=-1", [](const Remembered& r) {
+            return !r.measure.fullScaleVrms;
+        });
+        row("full scale infinite", "measure", "fullScaleVrms=inf", [](const Remembered& r) {
+            return !r.measure.fullScaleVrms;
+        });
+        row("weighting unknown", "measure", "weighting=z", [](const Remembered& r) {
+            return r.measure.weighting == core::Weighting::None;
+        });
+        row("theme unknown", "view", "theme=neon", [](const Remembered& r) {
+            return r.view.theme == ui::ThemeName::Paper;
+        });
+        row("page unknown", "view", "page=7", [](const Remembered& r) {
+            return r.view.page == ui::Page::Trim;
+        });
+        row("picture scale too big", "view", "pictureScale=9", [](const Remembered& r) {
+            return r.view.pictureScale == 2;
+        });
+        row("channel zero", "source", "channel=0", [](const Remembered& r) {
+            return r.source.channel == 1;
+        });
+        row("demo rate too low", "source", "rateHz=8000", [](const Remembered& r) {
+            return r.source.rateHz == 44100.0;
+        });
+        row("source empty", "source", "name=", [](const Remembered& r) {
+            return r.source == SourceSpec();
+        });
     }
 
     void valuesOutOfRange_areClampedOrBecomeDefaults()
@@ -173,8 +206,9 @@ private slots:
     void withoutAFileName_theUsersConfigurationFolderIsUsed()
     {
         const QString usual = Settings().file();
-        QVERIFY2(usual.startsWith(QStandardPaths::writableLocation(QStandardPaths::AppConfigLocation)),
-                 qPrintable(usual));
+        QVERIFY2(
+            usual.startsWith(QStandardPaths::writableLocation(QStandardPaths::AppConfigLocation)),
+            qPrintable(usual));
         QVERIFY(usual.endsWith(u"/sinewright.ini"_s));
     }
 };

@@ -11,6 +11,7 @@
 #include <memory>
 #include <optional>
 
+#include "tests/support/figure.h"
 #include "tests/support/virtual_card.h"
 
 using namespace sinewright;
@@ -159,12 +160,18 @@ void TestCardWatchdog::killedServer_isNoticedAndCaptureResumes()
     QCOMPARE_LE(std::abs(gapSeconds - static_cast<double>(outageMs) / 1000.0), 0.5);
     QVERIFY(bench.areNumbersInOrder());
     QCOMPARE_LE(bench.slowestTendMs(), 100);
-    qInfo("noticed after %lld ms; samples again %lld ms after the server was back; outage %lld ms, "
-          "gap marked %.0f ms",
-          noticedMs,
-          resumedMs,
-          outageMs,
-          gapSeconds * 1000.0);
+    using namespace Qt::StringLiterals;
+    qInfo().noquote() << tests::figureLine(
+        u"dead card, noticed"_s, u"%1 ms"_s.arg(noticedMs), u"1000 ms"_s, noticedMs <= 1000);
+    qInfo().noquote() << tests::figureLine(u"card back, samples again by themselves"_s,
+                                           u"after %1 ms"_s.arg(resumedMs),
+                                           u"they come"_s,
+                                           true);
+    qInfo().noquote() << tests::figureLine(
+        u"outage marked as a gap"_s,
+        u"%1 s of %2 s"_s.arg(gapSeconds, 0, 'f', 2).arg(double(outageMs) / 1000.0, 0, 'f', 2),
+        u"within 0.5 s"_s,
+        true);
 }
 
 void TestCardWatchdog::frozenServer_holdsNobodyUp()

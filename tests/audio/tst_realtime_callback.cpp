@@ -18,6 +18,7 @@
 #include <string>
 #include <vector>
 
+#include "tests/support/figure.h"
 #include "tests/support/virtual_card.h"
 #include <dlfcn.h>
 #include <pthread.h>
@@ -335,7 +336,12 @@ void TestRealtimeCallback::captureThroughPortAudio_neitherAllocatesNorLocks()
     QCOMPARE_GE(called, 10);
     QCOMPARE(allocated, 0);
     QCOMPARE(locked, 0);
-    qInfo("%d callbacks by PortAudio: %d allocations, %d locks", called, allocated, locked);
+    using namespace Qt::StringLiterals;
+    qInfo().noquote() << tests::figureLine(
+        u"allocations + locks in %1 callbacks by PortAudio"_s.arg(called),
+        u"%1 + %2"_s.arg(allocated).arg(locked),
+        u"0 + 0"_s,
+        allocated + locked == 0);
 }
 
 QTEST_GUILESS_MAIN(TestRealtimeCallback)

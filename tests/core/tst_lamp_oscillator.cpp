@@ -11,12 +11,14 @@
 #include <vector>
 
 #include "tests/support/allocation_counter.h"
+#include "tests/support/figure.h"
 #include "tests/support/harmonic_fit.h"
 #include <Eigen/QR>
 
 using namespace sinewright;
 using core::LampOscillator;
 using core::LampOscillatorParts;
+using namespace Qt::StringLiterals;
 
 namespace {
 
@@ -191,7 +193,8 @@ private slots:
         const double thdPercent = 100.0 * fit.thd();
         const double level = fit.levelRms / reference.levelVrms - 1.0;
         const double thd = thdPercent / reference.thdPercent - 1.0;
-        qInfo("level %+.2e, THD %+.2e relative", level, thd);
+        m_worstLevel = std::max(m_worstLevel, std::abs(level));
+        m_worstThd = std::max(m_worstThd, std::abs(thd));
         // The bar is 1e-3 and 3e-2. The same equations in the same steps leave only the noise: at 235 ohm, where the
         // loop is softest, it makes the level of a second wander by 6e-5 (one sigma), elsewhere by less than 2e-5.
         QCOMPARE_LE(std::abs(level), isAtThreshold ? 4e-4 : 8e-5);
@@ -200,6 +203,25 @@ private slots:
         const double levelBar = reference.levelVrms > 0.9 ? 5e-4 : 5e-3;
         QCOMPARE_LE(std::abs(fit.levelRms / reference.fineLevelVrms - 1.0), levelBar);
         QCOMPARE_LE(std::abs(thdPercent / reference.fineThdPercent - 1.0), 0.025);
+    }
+
+    void cleanupTestCase()
+    {
+        if (m_worstLevel > 0.0) {
+            const auto percent = [](double ratio) {
+                return u"%1 %"_s.arg(100.0 * ratio, 0, 'f', 4);
+            };
+            qInfo().noquote() << tests::figureLine(
+                u"demo against independent program, 235 to 680 ohm: level"_s,
+                percent(m_worstLevel),
+                u"0.1 %"_s,
+                m_worstLevel <= 1e-3);
+            qInfo().noquote() << tests::figureLine(
+                u"demo against independent program, 235 to 680 ohm: THD"_s,
+                percent(m_worstThd),
+                u"3 %"_s,
+                m_worstThd <= 3e-2);
+        }
     }
 
     void freeRotation_neitherGrowsNorDecays()
@@ -439,6 +461,10 @@ private slots:
             QVERIFY(tests::allocationCount > before);
         }
     }
+
+private:
+    double m_worstLevel = 0.0; // relative, over all rows against the independent program
+    double m_worstThd = 0.0;
 };
 
 QTEST_APPLESS_MAIN(LampOscillatorTest)

@@ -1,12 +1,12 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "core/measure/measure.h"
-#include "core/measure/meter.h"
 
 #include <QTest>
 
 #include <array>
 #include <cmath>
 
+#include "tests/support/reader.h"
 #include "tests/support/signals.h"
 
 using namespace sinewright;
@@ -37,13 +37,7 @@ private slots:
     void quickReading_agreesWithFull();
 
 private:
-    core::Meter m_meter;
-    [[nodiscard]] Reading read(const std::vector<double>& samples,
-                               double rateHz = 48000.0,
-                               const core::MeasureSettings& settings = {})
-    {
-        return m_meter.measure(samples, {rateHz}, settings).reading;
-    }
+    tests::Reader read;
 };
 
 namespace {

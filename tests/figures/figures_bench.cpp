@@ -172,7 +172,11 @@ void captureTone(const QString& folder)
         row(u"virtual card"_s, card.whatFailed(), u"starts and plays"_s, false);
         return;
     }
-    const Run run = runProgram({u"measure"_s, u"card"_s, u"--rate"_s, u"96000"_s, u"--json"_s});
+    // The head of what is played may come late: ask again while there is nothing to hear yet.
+    Run run;
+    for (int tries = 0; tries < 5 && run.exitCode != 0; ++tries) {
+        run = runProgram({u"measure"_s, u"card"_s, u"--rate"_s, u"96000"_s, u"--json"_s});
+    }
     const QJsonObject reading = QJsonDocument::fromJson(run.output).object();
     const double error = reading[u"thdDb"].toDouble() - tone.thdDb();
     row(u"card capture, THD at %1 dB, error"_s.arg(number(tone.thdDb(), 1)),

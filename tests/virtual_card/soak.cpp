@@ -27,10 +27,12 @@
 #include <thread>
 #include <vector>
 
+#include "tests/support/figure.h"
 #include "tests/support/virtual_card.h"
 
 using namespace sinewright;
 using namespace std::chrono_literals;
+using namespace Qt::StringLiterals;
 using tests::VirtualCard;
 
 namespace {
@@ -163,13 +165,9 @@ bool capture(Inspector& inspector, audio::SampleRing& ring, std::chrono::duratio
     return true;
 }
 
-bool print(const char* name, std::uint64_t value, const char* bar, bool isMet)
+bool print(const QString& name, std::uint64_t value, const QString& bar, bool isMet)
 {
-    std::printf("%s | %llu | %s | %s\n",
-                name,
-                static_cast<unsigned long long>(value),
-                bar,
-                isMet ? "met" : "missed");
+    std::puts(qPrintable(tests::figureLine(name, QString::number(value), bar, isMet)));
     return isMet;
 }
 
@@ -208,21 +206,21 @@ int main(int argc, char** argv)
     }
     // The player may have been late with a tenth of it: what counts is what was played.
     const double wanted = 0.9 * seconds * VirtualCard::kRateHz;
-    const bool areMet[] = {print("capture beside a busy core: frames checked",
+    const bool areMet[] = {print(u"capture beside a busy core: frames checked"_s,
                                  inspector.checked(),
-                                 "the time asked for",
+                                 u"the time asked for"_s,
                                  static_cast<double>(inspector.checked()) >= wanted),
-                           print("capture beside a busy core: samples lost and counted",
+                           print(u"capture beside a busy core: samples lost and counted"_s,
                                  ring.framesLost(),
-                                 "0, or each counted",
+                                 u"0, or each counted"_s,
                                  (ring.framesLost() > 0) == (inspector.gaps() > 0)),
-                           print("capture beside a busy core: samples lost and not counted",
+                           print(u"capture beside a busy core: samples lost and not counted"_s,
                                  inspector.uncounted(),
-                                 "0",
+                                 u"0"_s,
                                  inspector.uncounted() == 0),
-                           print("capture beside a busy core: samples altered",
+                           print(u"capture beside a busy core: samples altered"_s,
                                  inspector.altered(),
-                                 "0",
+                                 u"0"_s,
                                  inspector.altered() == 0)};
     std::printf("gaps marked: %llu; silent frames let happen by the player: %llu\n",
                 static_cast<unsigned long long>(inspector.gaps()),
