@@ -11,7 +11,7 @@ using namespace Qt::StringLiterals;
 namespace {
 
 constexpr double kTurnDeg = 360.0;
-constexpr double kQuarterDeg = 90.0;
+constexpr int kQuarters = 4;
 constexpr double kCycleEnd = 1.15; ///< the averaged cycle keeps a little clear of the axes
 
 } // namespace
@@ -24,7 +24,8 @@ CyclePlot::CyclePlot(QWidget* parent)
     setSideMargins(40, 16);
     xAxis->setRange(0.0, kTurnDeg);
     auto degrees = QSharedPointer<QCPAxisTickerText>::create();
-    for (double at = 0.0; at <= kTurnDeg; at += kQuarterDeg) {
+    for (int quarter = 0; quarter <= kQuarters; ++quarter) {
+        const double at = kTurnDeg * quarter / kQuarters;
         degrees->addTick(at, numberText(at, 0) + u'°');
     }
     xAxis->setTicker(degrees);
@@ -39,9 +40,9 @@ CyclePlot::CyclePlot(QWidget* parent)
     present();
 }
 
-void CyclePlot::setFrame(std::shared_ptr<const core::Frame> frame)
+void CyclePlot::setFrame(const std::shared_ptr<const core::Frame>& frame)
 {
-    m_model.setFrame(std::move(frame));
+    m_model.setFrame(frame);
     present();
     draw();
 }

@@ -26,15 +26,13 @@ bool fits(AxisRange inner, AxisRange outer)
 
 double stepAbove(double value)
 {
-    double decade = std::pow(kDecade, std::floor(std::log10(value)));
-    for (int i = 0; i < 2; ++i, decade *= kDecade) {
-        for (const double step : kSteps) {
-            if (step * decade >= value * (1.0 - kSlack)) {
-                return step * decade;
-            }
+    const double decade = std::pow(kDecade, std::floor(std::log10(value)));
+    for (const double step : kSteps) {
+        if (step * decade >= value * (1.0 - kSlack)) {
+            return step * decade;
         }
     }
-    return decade;
+    return kDecade * decade;
 }
 
 double stepBelow(double value)
@@ -107,19 +105,22 @@ std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points, double 
 }
 
 std::vector<QPointF>
-dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off)
+dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off, double flat)
 {
     std::vector<QPointF> result;
     result.reserve(points.size());
     bool isParted = true;
-    for (const QPointF& point : points) {
-        const double column = std::floor(point.x() / columnWidth);
+    for (std::size_t i = 0; i < points.size(); ++i) {
+        const double column = std::floor(points[i].x() / columnWidth);
         const double place = column - std::floor(column / (on + off)) * (on + off);
-        if (place < on) {
-            result.push_back(point);
+        const bool isStep =
+            (i > 0 && std::abs(points[i].y() - points[i - 1].y()) > flat) ||
+            (i + 1 < points.size() && std::abs(points[i + 1].y() - points[i].y()) > flat);
+        if (place < on || isStep) {
+            result.push_back(points[i]);
             isParted = false;
         } else if (!isParted) {
-            result.emplace_back(point.x(), std::numeric_limits<double>::quiet_NaN());
+            result.emplace_back(points[i].x(), std::numeric_limits<double>::quiet_NaN());
             isParted = true;
         }
     }

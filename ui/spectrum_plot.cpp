@@ -39,6 +39,7 @@ SpectrumPlot::SpectrumPlot(QWidget* parent)
     m_lowest = addGraph();
     m_highest = addGraph();
     m_highest->setChannelFillGraph(m_lowest);
+    m_highest->setAntialiasedFill(false); // its edge lies under the trace, and it costs a third
     for (QCPGraph* graph : {m_lowest, m_highest}) {
         graph->setAdaptiveSampling(false); // the model made one point a column
         graph->setAntialiased(false);
