@@ -18,8 +18,8 @@ constexpr double kCycleEnd = 1.15; ///< the averaged cycle keeps a little clear 
 
 CyclePlot::CyclePlot(QWidget* parent)
     : Plot(u"residual"_s, tr("Cycle residual"), u"%"_s, parent)
-    , m_cycle(nullptr)
-    , m_residual(nullptr)
+    , m_cycle(addGraph(xAxis, yAxis2))
+    , m_residual(addGraph(xAxis, yAxis))
 {
     setSideMargins(40, 16);
     xAxis->setRange(0.0, kTurnDeg);
@@ -31,8 +31,6 @@ CyclePlot::CyclePlot(QWidget* parent)
     xAxis->setTicker(degrees);
     yAxis->setTicker(QSharedPointer<NumberTicker>::create(0.0, 4));
     yAxis2->setRange(-kCycleEnd, kCycleEnd);
-    m_cycle = addGraph(xAxis, yAxis2);
-    m_residual = addGraph(xAxis, yAxis);
     for (QCPGraph* graph : {m_cycle, m_residual}) {
         graph->setAdaptiveSampling(false);
     }

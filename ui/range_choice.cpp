@@ -15,7 +15,8 @@ constexpr double kDecade = 10.0;
 constexpr double kSlack =
     1e-9; ///< relative; a value that is a step but for rounding counts as that step
 constexpr double kRoom = 1.15; ///< free space that a range leaves beyond the data, as a factor
-constexpr double kLoose = 2.5; ///< a range so many times too wide is chosen anew
+constexpr double kLeastFilled = 0.3; ///< of a symmetric axis
+constexpr double kLoose = 2.5;       ///< a range so many times too wide is chosen anew
 
 bool fits(AxisRange inner, AxisRange outer)
 {
@@ -75,7 +76,7 @@ AxisRange linearRange(double lowest, double highest, double leastSpan, AxisRange
 double symmetricEnd(double peak, double current)
 {
     const double wanted = stepAbove(peak * kRoom);
-    return peak <= current && current <= kLoose * wanted ? current : wanted;
+    return peak <= current && peak >= kLeastFilled * current ? current : wanted;
 }
 
 std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points, double columnWidth)

@@ -42,9 +42,9 @@ QString timeLabel(double seconds, bool hasSeconds)
 
 TrendPlot::TrendPlot(QWidget* parent)
     : Plot(u"trend"_s, tr("Trim trend"), QString(), parent)
-    , m_thd(nullptr)
-    , m_thdn(nullptr)
-    , m_level(nullptr)
+    , m_level(addGraph(xAxis, yAxis2))
+    , m_thdn(addGraph(xAxis, yAxis))
+    , m_thd(addGraph(xAxis, yAxis))
 {
     setSideMargins(40, kRightMargin);
     yAxis2->setVisible(true);
@@ -53,9 +53,6 @@ TrendPlot::TrendPlot(QWidget* parent)
     yAxis2->setTicker(QSharedPointer<NumberTicker>::create(0.0, 6));
     yAxis2->grid()->setVisible(false);
 
-    m_level = addGraph(xAxis, yAxis2);
-    m_thdn = addGraph(xAxis, yAxis);
-    m_thd = addGraph(xAxis, yAxis);
     for (QCPGraph* graph : {m_level, m_thdn, m_thd}) {
         graph->setAdaptiveSampling(false); // the model made one pair of points a column
     }

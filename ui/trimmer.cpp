@@ -58,7 +58,7 @@ Trimmer::Trimmer(QWidget* parent)
     addKey(tr("Trimmer: to its highest"), Qt::Key_End, kEnd);
 }
 
-void Trimmer::addKey(const QString& text, QKeySequence key, int steps)
+void Trimmer::addKey(const QString& text, const QKeySequence& key, int steps)
 {
     auto* action = new QAction(text, this);
     action->setShortcut(key);

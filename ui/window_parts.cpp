@@ -55,7 +55,7 @@ WindowParts::WindowParts(QMainWindow& window, const Actions& actions)
     layOut(window);
 }
 
-void WindowParts::layOut(QMainWindow& window)
+void WindowParts::layOut(QMainWindow& window) const
 {
     auto* onSheet = new QVBoxLayout(sheet);
     onSheet->setContentsMargins(0, 0, 0, 0);
@@ -92,7 +92,7 @@ QList<BenchPage*> WindowParts::allPages() const
     return result;
 }
 
-void WindowParts::setTheme(const Theme& theme)
+void WindowParts::setTheme(const Theme& theme) const
 {
     rail->setTheme(theme);
     sources->setTheme(theme);
@@ -102,7 +102,7 @@ void WindowParts::setTheme(const Theme& theme)
     }
 }
 
-void WindowParts::setBench(const BenchState& state)
+void WindowParts::setBench(const BenchState& state) const
 {
     sources->setBenchState(state);
     bottom->setBenchState(state);
@@ -114,13 +114,13 @@ void WindowParts::setBench(const BenchState& state)
     }
 }
 
-void WindowParts::setAdvice(const QString& sentence, bool isAlert)
+void WindowParts::setAdvice(const QString& sentence, bool isAlert) const
 {
     advice->setSentence(sentence, isAlert);
     arms->setAdvice(sentence, isAlert);
 }
 
-void WindowParts::showPage(int index)
+void WindowParts::showPage(int index) const
 {
     pages->setCurrentIndex(index);
     advice->setTypeSizes(
@@ -128,7 +128,7 @@ void WindowParts::showPage(int index)
     focusPage();
 }
 
-void WindowParts::showArmsLength(bool isOn)
+void WindowParts::showArmsLength(bool isOn) const
 {
     views->setCurrentWidget(isOn ? static_cast<QWidget*>(arms) : bench);
 }
@@ -143,7 +143,7 @@ BenchPage* WindowParts::page() const
     return isAtArmsLength() ? arms : qobject_cast<BenchPage*>(pages->currentWidget());
 }
 
-void WindowParts::focusPage()
+void WindowParts::focusPage() const
 {
     QWidget& trimmer = trim->trimmer();
     (page() == trim && trimmer.isVisibleTo(trim) ? &trimmer : page())->setFocus();

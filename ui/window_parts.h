@@ -37,22 +37,22 @@ public:
     BottomLine* bottom;
     Rail* rail;
 
-    void setTheme(const Theme& theme);
-    void setBench(const BenchState& state);
-    void setAdvice(const QString& sentence, bool isAlert);
+    void setTheme(const Theme& theme) const;
+    void setBench(const BenchState& state) const;
+    void setAdvice(const QString& sentence, bool isAlert) const;
     /// @param index  in the order of Page.
-    void showPage(int index);
-    void showArmsLength(bool isOn);
+    void showPage(int index) const;
+    void showArmsLength(bool isOn) const;
     [[nodiscard]] bool isAtArmsLength() const;
     /// What is seen now: a page, or the view at arm's length.
     [[nodiscard]] BenchPage* page() const;
     /// Puts the keyboard where the hand wants it: on the trimmer if there is one.
-    void focusPage();
+    void focusPage() const;
     /// What drawing the plots in view took lately [ms].
     [[nodiscard]] double lastDrawMs() const;
 
 private:
-    void layOut(QMainWindow& window);
+    void layOut(QMainWindow& window) const;
     [[nodiscard]] QList<BenchPage*> allPages() const;
 };
 

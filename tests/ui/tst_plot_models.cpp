@@ -100,6 +100,7 @@ private slots:
         QCOMPARE(end, 0.5);
         QCOMPARE(symmetricEnd(0.25, end), end);
         QCOMPARE(symmetricEnd(0.01, end), 0.02);
+        QCOMPARE(symmetricEnd(1.0, 5.0), 2.0); // one step too wide is already hard to read
     }
 
     void columns_keepExtremesAndHoles()
