@@ -1,8 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/actions.h"
 
-#include <QActionGroup>
-
 namespace sinewright::ui {
 
 Actions::Actions(QObject* parent)
@@ -53,6 +51,7 @@ Actions::Actions(QObject* parent)
                        tr("Pixels of a picture over pixels of the window: 1 or 2")))
     , keys(add(tr("This list of keys"), tr("Keys"), Qt::Key_F1, tr("Lists all keys")))
     , quit(add(tr("Quit"), tr("Quit"), Qt::CTRL | Qt::Key_Q, tr("Closes the window")))
+    , m_pageGroup(new QActionGroup(this))
 {
     for (QAction* action : {freeze, armsLength, dusk, pictureScale}) {
         action->setCheckable(true);
@@ -76,7 +75,6 @@ QAction* Actions::add(const QString& text,
 
 void Actions::addPages()
 {
-    auto* group = new QActionGroup(this);
     const std::pair<QString, QString> texts[kPages] = {
         {tr("Hook-up"), tr("Join the oscillator safely, set the level, say what is measured")},
         {tr("Trim"), tr("Turn the trimmer and see whether it gets better")},
@@ -92,7 +90,7 @@ void Actions::addPages()
                 QKeySequence(Qt::CTRL | static_cast<Qt::Key>(Qt::Key_1 + static_cast<int>(i))),
                 texts[i].second);
         pages[i]->setCheckable(true);
-        group->addAction(pages[i]);
+        m_pageGroup->addAction(pages[i]);
     }
 }
 

@@ -2,6 +2,7 @@
 #pragma once
 
 #include <QAction>
+#include <QActionGroup>
 #include <QList>
 #include <QObject>
 
@@ -48,6 +49,8 @@ private:
     QAction*
     add(const QString& text, const QString& shortText, const QKeySequence& key, const QString& tip);
     void addPages();
+
+    QActionGroup* m_pageGroup;
 };
 
 } // namespace sinewright::ui

@@ -2,6 +2,7 @@
 #include "ui/advice_label.h"
 
 #include <QFontMetrics>
+#include <QPainter>
 
 namespace sinewright::ui {
 
@@ -26,7 +27,7 @@ AdviceLabel::AdviceLabel(QWidget* parent) : QLabel(parent), m_theme(&ui::theme(T
 void AdviceLabel::setTheme(const Theme& theme)
 {
     m_theme = &theme;
-    colour();
+    update();
 }
 
 void AdviceLabel::setTypeSizes(int largest, int smallest, int lines)
@@ -46,7 +47,7 @@ void AdviceLabel::setSentence(const QString& sentence, bool isAlert)
     }
     if (isAlert != m_isAlert) {
         m_isAlert = isAlert;
-        colour();
+        update();
     }
 }
 
@@ -68,20 +69,25 @@ void AdviceLabel::fit()
         const QFontMetrics metrics(sentenceFont(pixels));
         const QRect needed =
             metrics.boundingRect(QRect(0, 0, width(), kUnbounded), Qt::TextWordWrap, text());
-        if (needed.height() <= metrics.height() * m_lines && needed.width() <= width()) {
+        // Heights are rounded line by line: half a line more is not yet another line.
+        if (2 * needed.height() <= metrics.height() * (2 * m_lines + 1) &&
+            needed.width() <= width()) {
             break;
         }
     }
-    if (font().pixelSize() != pixels || font().families() != sentenceFont(pixels).families()) {
-        setFont(sentenceFont(pixels));
+    if (pixels != m_pixels) {
+        m_pixels = pixels;
+        update();
     }
 }
 
-void AdviceLabel::colour()
+void AdviceLabel::paintEvent(QPaintEvent* /*event*/)
 {
-    QPalette palette = this->palette();
-    palette.setColor(QPalette::WindowText, m_isAlert ? m_theme->alert : m_theme->ink);
-    setPalette(palette);
+    // Not through the widget's font: a change of style sheet would put back an older one.
+    QPainter painter(this);
+    painter.setFont(sentenceFont(m_pixels));
+    painter.setPen(m_isAlert ? m_theme->alert : m_theme->ink);
+    painter.drawText(rect(), Qt::AlignLeft | Qt::AlignVCenter | Qt::TextWordWrap, text());
 }
 
 } // namespace sinewright::ui

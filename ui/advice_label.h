@@ -18,16 +18,19 @@ public:
     /// @param largest, smallest  type sizes [logical pixels]; @param lines  how many lines it may take.
     void setTypeSizes(int largest, int smallest, int lines);
     void setSentence(const QString& sentence, bool isAlert);
+    /// Type size that is used now [logical pixels].
+    [[nodiscard]] int typeSize() const { return m_pixels; }
     [[nodiscard]] QSize minimumSizeHint() const override;
 
 protected:
     void resizeEvent(QResizeEvent* event) override;
+    void paintEvent(QPaintEvent* event) override;
 
 private:
     void fit();
-    void colour();
 
     const Theme* m_theme;
+    int m_pixels = 0;
     int m_largest = 27;
     int m_smallest = 17;
     int m_lines = 1;

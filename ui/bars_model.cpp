@@ -19,7 +19,7 @@ constexpr double kLowestFloorDbc = -200.0;
 
 BarsModel::BarsModel(QObject* parent) : QObject(parent) {}
 
-void BarsModel::setFrame(std::shared_ptr<const core::Frame> frame)
+void BarsModel::setFrame(const std::shared_ptr<const core::Frame>& frame)
 {
     m_bars.clear();
     if (frame) {

@@ -27,7 +27,7 @@ class BarsModel final : public QObject
 public:
     explicit BarsModel(QObject* parent = nullptr);
 
-    void setFrame(std::shared_ptr<const core::Frame> frame);
+    void setFrame(const std::shared_ptr<const core::Frame>& frame);
 
     [[nodiscard]] bool isEmpty() const { return m_bars.empty(); }
     [[nodiscard]] const std::vector<HarmonicBar>& bars() const { return m_bars; }

@@ -34,9 +34,9 @@ BarsPlot::BarsPlot(QWidget* parent)
     present();
 }
 
-void BarsPlot::setFrame(std::shared_ptr<const core::Frame> frame)
+void BarsPlot::setFrame(const std::shared_ptr<const core::Frame>& frame)
 {
-    m_model.setFrame(std::move(frame));
+    m_model.setFrame(frame);
     present();
     draw();
 }

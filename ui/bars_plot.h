@@ -14,7 +14,7 @@ class BarsPlot final : public Plot
 public:
     explicit BarsPlot(QWidget* parent = nullptr);
 
-    void setFrame(std::shared_ptr<const core::Frame> frame);
+    void setFrame(const std::shared_ptr<const core::Frame>& frame);
     [[nodiscard]] const BarsModel& model() const { return m_model; }
 
 protected:

@@ -18,7 +18,7 @@ constexpr double kLeastEndPercent = 1e-5;
 
 CycleModel::CycleModel(QObject* parent) : QObject(parent) {}
 
-void CycleModel::setFrame(std::shared_ptr<const core::Frame> frame)
+void CycleModel::setFrame(const std::shared_ptr<const core::Frame>& frame)
 {
     const auto view = frame ? frame->cycle : nullptr;
     if (view == m_view) {

@@ -18,7 +18,7 @@ class CycleModel final : public QObject
 public:
     explicit CycleModel(QObject* parent = nullptr);
 
-    void setFrame(std::shared_ptr<const core::Frame> frame);
+    void setFrame(const std::shared_ptr<const core::Frame>& frame);
 
     [[nodiscard]] bool isEmpty() const { return m_residual.empty(); }
     [[nodiscard]] const std::vector<QPointF>& residual() const

@@ -11,27 +11,26 @@ using namespace Qt::StringLiterals;
 namespace {
 
 constexpr double kTurnDeg = 360.0;
-constexpr double kQuarterDeg = 90.0;
+constexpr int kQuarters = 4;
 constexpr double kCycleEnd = 1.15; ///< the averaged cycle keeps a little clear of the axes
 
 } // namespace
 
 CyclePlot::CyclePlot(QWidget* parent)
     : Plot(u"residual"_s, tr("Cycle residual"), u"%"_s, parent)
-    , m_cycle(nullptr)
-    , m_residual(nullptr)
+    , m_cycle(addGraph(xAxis, yAxis2))
+    , m_residual(addGraph(xAxis, yAxis))
 {
     setSideMargins(40, 16);
     xAxis->setRange(0.0, kTurnDeg);
     auto degrees = QSharedPointer<QCPAxisTickerText>::create();
-    for (double at = 0.0; at <= kTurnDeg; at += kQuarterDeg) {
+    for (int quarter = 0; quarter <= kQuarters; ++quarter) {
+        const double at = kTurnDeg * quarter / kQuarters;
         degrees->addTick(at, numberText(at, 0) + u'°');
     }
     xAxis->setTicker(degrees);
     yAxis->setTicker(QSharedPointer<NumberTicker>::create(0.0, 4));
     yAxis2->setRange(-kCycleEnd, kCycleEnd);
-    m_cycle = addGraph(xAxis, yAxis2);
-    m_residual = addGraph(xAxis, yAxis);
     for (QCPGraph* graph : {m_cycle, m_residual}) {
         graph->setAdaptiveSampling(false);
     }
@@ -39,9 +38,9 @@ CyclePlot::CyclePlot(QWidget* parent)
     present();
 }
 
-void CyclePlot::setFrame(std::shared_ptr<const core::Frame> frame)
+void CyclePlot::setFrame(const std::shared_ptr<const core::Frame>& frame)
 {
-    m_model.setFrame(std::move(frame));
+    m_model.setFrame(frame);
     present();
     draw();
 }

@@ -13,7 +13,7 @@ class CyclePlot final : public Plot
 public:
     explicit CyclePlot(QWidget* parent = nullptr);
 
-    void setFrame(std::shared_ptr<const core::Frame> frame);
+    void setFrame(const std::shared_ptr<const core::Frame>& frame);
     [[nodiscard]] const CycleModel& model() const { return m_model; }
 
 protected:

@@ -31,6 +31,18 @@ constexpr double kPlainHeight = 600.0; ///< of the column; a higher one has larg
 constexpr double kLargestScale = 1.4;
 constexpr qint64 kShowEveryMs = 240;
 
+/// What kind of reading the figures come from, or why there are none.
+QString kindOf(const ShownReading& shown, bool isStale)
+{
+    if (isStale) {
+        return FiguresColumn::tr("last reading");
+    }
+    if (shown.reading->status != core::ReadingStatus::Ok) {
+        return statusText(shown.reading->status);
+    }
+    return shown.isFull ? FiguresColumn::tr("full reading") : FiguresColumn::tr("quick reading");
+}
+
 QString underText(std::optional<double> ratio)
 {
     return ratio ? joined(ratioDecibelFigure(ratio, 1, u"dB"_s)) : QString();
@@ -88,10 +100,7 @@ void FiguresColumn::rebuild()
     const ShownReading shown = m_frame ? shownReading(*m_frame) : ShownReading{&kNothing, false};
     const core::Reading& reading = *shown.reading;
     const int digits = shown.isFull ? kFullDigits : kQuickDigits;
-    const QString kind = !m_frame       ? QString()
-                         : m_isStale    ? tr("last reading")
-                         : shown.isFull ? tr("full reading")
-                                        : tr("quick reading");
+    const QString kind = m_frame ? kindOf(shown, m_isStale) : QString();
 
     FigureText level = reading.levelVrms ? voltFigure(reading.levelVrms)
                                          : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s);
@@ -238,7 +247,7 @@ void FiguresColumn::paintLine(QPainter& painter, const Line& line, double baseli
     painter.setPen(m_theme->inkSoft);
     painter.drawText(QPointF(0.0, baseline), line.label);
     const QFontMetricsF metrics(painter.font());
-    const bool isWord = line.figure.unit.isEmpty();
+    const bool isWord = line.figure.unit.isEmpty() || line.figure.value == kAbsent;
     const double unitWidth = isWord ? -px(5.0) : metrics.horizontalAdvance(u"dBFS"_s);
     if (line.figure.value != kAbsent) {
         painter.drawText(QPointF(width() - unitWidth, baseline), line.figure.unit);

@@ -42,6 +42,7 @@ public:
 
     explicit MainWindow(FrameFeed feed, QWidget* parent = nullptr);
     ~MainWindow() override;
+    Q_DISABLE_COPY_MOVE(MainWindow)
 
     void setSources(const QList<SourceChoice>& choices);
     void setBenchState(const BenchState& state);

@@ -131,9 +131,7 @@ QImage composePicture(QWidget* subject, const PictureCaption& caption, int scale
 {
     const QPalette palette = subject->palette();
     // What fills its window reaches the picture's edges; a page or a plot gets a margin of paper.
-    const int edge =
-        subject->size() == subject->window()->size() ? 0
-                                                                                          : kMargin;
+    const int edge = subject->size() == subject->window()->size() ? 0 : kMargin;
     const int width = subject->width() + 2 * edge;
     const int textWidth = width - 2 * kMargin;
     const QFont titleFont = sentenceFont(kTitlePixels);

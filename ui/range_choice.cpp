@@ -15,7 +15,8 @@ constexpr double kDecade = 10.0;
 constexpr double kSlack =
     1e-9; ///< relative; a value that is a step but for rounding counts as that step
 constexpr double kRoom = 1.15; ///< free space that a range leaves beyond the data, as a factor
-constexpr double kLoose = 2.5; ///< a range so many times too wide is chosen anew
+constexpr double kLeastFilled = 0.3; ///< of a symmetric axis
+constexpr double kLoose = 2.5;       ///< a range so many times too wide is chosen anew
 
 bool fits(AxisRange inner, AxisRange outer)
 {
@@ -26,15 +27,13 @@ bool fits(AxisRange inner, AxisRange outer)
 
 double stepAbove(double value)
 {
-    double decade = std::pow(kDecade, std::floor(std::log10(value)));
-    for (int i = 0; i < 2; ++i, decade *= kDecade) {
-        for (const double step : kSteps) {
-            if (step * decade >= value * (1.0 - kSlack)) {
-                return step * decade;
-            }
+    const double decade = std::pow(kDecade, std::floor(std::log10(value)));
+    for (const double step : kSteps) {
+        if (step * decade >= value * (1.0 - kSlack)) {
+            return step * decade;
         }
     }
-    return decade;
+    return kDecade * decade;
 }
 
 double stepBelow(double value)
@@ -77,7 +76,7 @@ AxisRange linearRange(double lowest, double highest, double leastSpan, AxisRange
 double symmetricEnd(double peak, double current)
 {
     const double wanted = stepAbove(peak * kRoom);
-    return peak <= current && current <= kLoose * wanted ? current : wanted;
+    return peak <= current && peak >= kLeastFilled * current ? current : wanted;
 }
 
 std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points, double columnWidth)
@@ -107,19 +106,22 @@ std::vector<QPointF> reduceToColumns(const std::vector<QPointF>& points, double 
 }
 
 std::vector<QPointF>
-dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off)
+dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off, double flat)
 {
     std::vector<QPointF> result;
     result.reserve(points.size());
     bool isParted = true;
-    for (const QPointF& point : points) {
-        const double column = std::floor(point.x() / columnWidth);
+    for (std::size_t i = 0; i < points.size(); ++i) {
+        const double column = std::floor(points[i].x() / columnWidth);
         const double place = column - std::floor(column / (on + off)) * (on + off);
-        if (place < on) {
-            result.push_back(point);
+        const bool isStep =
+            (i > 0 && std::abs(points[i].y() - points[i - 1].y()) > flat) ||
+            (i + 1 < points.size() && std::abs(points[i + 1].y() - points[i].y()) > flat);
+        if (place < on || isStep) {
+            result.push_back(points[i]);
             isParted = false;
         } else if (!isParted) {
-            result.emplace_back(point.x(), std::numeric_limits<double>::quiet_NaN());
+            result.emplace_back(points[i].x(), std::numeric_limits<double>::quiet_NaN());
             isParted = true;
         }
     }

@@ -39,8 +39,8 @@ linearRange(double lowest, double highest, double leastSpan, AxisRange current);
                                                    double columnWidth);
 
 /// The same line as dashes of `on` columns with `off` between, parted by NaN points: a pen with a dash pattern costs
-/// a multiple of a plain one. Dashes keep their place along x.
+/// a multiple of a plain one. Dashes keep their place along x; where the line steps by more than `flat` it is whole.
 [[nodiscard]] std::vector<QPointF>
-dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off);
+dashed(const std::vector<QPointF>& points, double columnWidth, int on, int off, double flat);
 
 } // namespace sinewright::ui

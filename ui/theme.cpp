@@ -145,7 +145,7 @@ QRadioButton::indicator:checked { width: 6px; height: 6px; border: 4px solid @co
 QRadioButton:focus { color: @copper; }
 QTableView { background: @page; color: @ink; border: none; gridline-color: @grid;
   selection-background-color: @slate; selection-color: @page; }
-QHeaderView::section { background: @page; color: @inkSoft; border: none; border-bottom: 1px solid @hairline; padding: 4px 8px; }
+QHeaderView::section { background: @page; color: @inkSoft; border: none; border-bottom: 1px solid @hairline; padding: 4px 3px; }
 QScrollBar:vertical { background: @page; width: 10px; margin: 0; }
 QScrollBar::handle:vertical { background: @hairline; min-height: 32px; border-radius: 3px; margin: 1px 2px; }
 QScrollBar::add-line, QScrollBar::sub-line { height: 0; width: 0; }

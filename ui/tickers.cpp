@@ -9,6 +9,14 @@
 
 namespace sinewright::ui {
 
+namespace {
+
+constexpr double kSlack = 1e-9;       ///< relative; rounding of a range's end
+constexpr double kWholeDecade = 1e-6; ///< how near a whole number the logarithm of a ten lies
+constexpr double kPastTick = 1.01;    ///< factor that leaves a tick behind but not the next
+
+} // namespace
+
 NumberTicker::NumberTicker(double step, int count) : m_step(step)
 {
     setTickCount(count);
@@ -46,12 +54,13 @@ QVector<double> StepTicker::createTickVector(double /*tickStep*/, const QCPRange
         return ticks;
     }
     const bool isRoomy = std::log10(range.upper / range.lower) <= m_roomiestDecades;
-    for (double tick = stepAbove(range.lower); tick <= range.upper * (1.0 + 1e-9);
-         tick = stepAbove(tick * 1.01)) {
+    double tick = stepAbove(range.lower);
+    while (tick <= range.upper * (1.0 + kSlack)) {
         const double decades = std::log10(tick);
-        if (isRoomy || std::abs(decades - std::round(decades)) < 1e-6) {
+        if (isRoomy || std::abs(decades - std::round(decades)) < kWholeDecade) {
             ticks.append(tick);
         }
+        tick = stepAbove(tick * kPastTick);
     }
     return ticks;
 }

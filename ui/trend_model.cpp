@@ -11,7 +11,8 @@ namespace {
 
 constexpr double kPercent = 100.0;
 constexpr double kLeastLevelSpanDb = 2.0;
-constexpr double kLeastPercent = 1e-7; ///< keeps a log axis from a true zero
+constexpr double kFlatShare = 1.0 / 60.0; ///< of the level axis: a smaller step counts as flat
+constexpr double kLeastPercent = 1e-7;    ///< keeps a log axis from a true zero
 
 using Figure = std::optional<double> core::TrendPoint::*;
 
@@ -59,6 +60,15 @@ void TrendModel::setFrame(std::shared_ptr<const core::Frame> frame)
     rebuild();
 }
 
+bool TrendModel::isEmpty() const
+{
+    const auto isFigure = [](const QPointF& point) {
+        return !std::isnan(point.y());
+    };
+    return std::none_of(m_level.begin(), m_level.end(), isFigure) &&
+           std::none_of(m_thd.begin(), m_thd.end(), isFigure);
+}
+
 AxisRange TrendModel::percentRange() const
 {
     return m_percentRange.span() > 0.0 ? m_percentRange : AxisRange{0.01, 1.0};
@@ -84,18 +94,19 @@ void TrendModel::rebuild()
         m_thd = lineOf(*m_frame->trend, &core::TrendPoint::thdRatio, kPercent, columnS);
         m_thdn = lineOf(*m_frame->trend, &core::TrendPoint::thdnRatio, kPercent, columnS);
         m_level = lineOf(*m_frame->trend, &core::TrendPoint::levelDbfs, 1.0, columnS);
-        m_levelDashes = dashed(m_level, columnS, kDashOn, kDashOff);
         const double now = m_frame->timeS;
-        for (auto* line : {&m_thd, &m_thdn, &m_level, &m_levelDashes}) {
-            for (QPointF& point : *line) {
-                point.rx() -= now;
-            }
-        }
         if (m_frame->trend->best) {
             m_best = Best{std::max(0.0, now - m_frame->trend->best->timeS),
                           m_frame->trend->best->thdRatio * kPercent};
         }
         chooseRanges();
+        m_levelDashes =
+            dashed(m_level, columnS, kDashOn, kDashOff, m_levelRange.span() * kFlatShare);
+        for (auto* line : {&m_thd, &m_thdn, &m_level, &m_levelDashes}) {
+            for (QPointF& point : *line) {
+                point.rx() -= now;
+            }
+        }
     }
     emit changed();
 }

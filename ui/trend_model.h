@@ -36,7 +36,8 @@ public:
 
     /// How much of the past the time axis shows [s]: a minute until there is more, then the whole trend.
     [[nodiscard]] double spanS() const { return m_spanS; }
-    [[nodiscard]] bool isEmpty() const { return m_thd.empty(); }
+    /// Not one figure in it.
+    [[nodiscard]] bool isEmpty() const;
     /// x [s] -span .. 0, y [%]; a NaN y parts the line: no figure there, or samples were lost.
     [[nodiscard]] const std::vector<QPointF>& thd() const { return m_thd; }
     [[nodiscard]] const std::vector<QPointF>& thdn() const { return m_thdn; }

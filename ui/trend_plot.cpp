@@ -26,24 +26,25 @@ QString percentLabel(double percent)
     return numberText(percent, decimals);
 }
 
-QString timeLabel(double seconds)
+QString timeLabel(double seconds, bool hasSeconds)
 {
     if (seconds == 0.0) {
         return TrendPlot::tr("now");
     }
     const double minutes = seconds / kMinuteS;
-    return minutes == std::round(minutes) ? TrendPlot::tr("%1 min").arg(numberText(minutes, 0))
-           : minutes > -1.0               ? TrendPlot::tr("%1 s").arg(numberText(seconds, 0))
-                                          : QString(); // half minutes get a line, not a number
+    if (minutes == std::round(minutes)) {
+        return TrendPlot::tr("%1 min").arg(numberText(minutes, 0));
+    }
+    return hasSeconds ? TrendPlot::tr("%1 s").arg(numberText(seconds, 0)) : QString();
 }
 
 } // namespace
 
 TrendPlot::TrendPlot(QWidget* parent)
     : Plot(u"trend"_s, tr("Trim trend"), QString(), parent)
-    , m_thd(nullptr)
-    , m_thdn(nullptr)
-    , m_level(nullptr)
+    , m_level(addGraph(xAxis, yAxis2))
+    , m_thdn(addGraph(xAxis, yAxis))
+    , m_thd(addGraph(xAxis, yAxis))
 {
     setSideMargins(40, kRightMargin);
     yAxis2->setVisible(true);
@@ -52,9 +53,6 @@ TrendPlot::TrendPlot(QWidget* parent)
     yAxis2->setTicker(QSharedPointer<NumberTicker>::create(0.0, 6));
     yAxis2->grid()->setVisible(false);
 
-    m_level = addGraph(xAxis, yAxis2);
-    m_thdn = addGraph(xAxis, yAxis);
-    m_thd = addGraph(xAxis, yAxis);
     for (QCPGraph* graph : {m_level, m_thdn, m_thd}) {
         graph->setAdaptiveSampling(false); // the model made one pair of points a column
     }
@@ -80,10 +78,11 @@ void TrendPlot::setSpan(double seconds)
         return;
     }
     m_spanS = seconds;
-    const double step = seconds > kMinuteS ? kMinuteS / 2.0 : kMinuteS / 4.0;
     auto time = QSharedPointer<QCPAxisTickerText>::create();
-    for (double at = -seconds; at <= 0.0; at += step) {
-        time->addTick(at, timeLabel(at));
+    const int ticks = seconds > kMinuteS ? static_cast<int>(seconds / kMinuteS) * 2 : 4;
+    for (int tick = 0; tick <= ticks; ++tick) {
+        const double at = -seconds * tick / ticks;
+        time->addTick(at, timeLabel(at, seconds <= kMinuteS));
     }
     xAxis->setTicker(time);
     xAxis->setRange(-seconds, 0.0);
@@ -110,11 +109,12 @@ void TrendPlot::present()
 void TrendPlot::restyle()
 {
     const Theme& t = colours();
-    m_thd->setPen(QPen(t.copper, 2.0, Qt::SolidLine, Qt::RoundCap, Qt::RoundJoin));
+    m_thd->setPen(QPen(t.copper, 2.0, Qt::SolidLine, Qt::SquareCap));
     m_thdn->setPen(QPen(t.ink, 1.0));
     m_level->setPen(QPen(t.slate, 1.2));
     QPen level = m_level->pen();
-    level.setDashPattern({TrendModel::kDashOn / level.widthF(), TrendModel::kDashOff / level.widthF()});
+    level.setDashPattern(
+        {TrendModel::kDashOn / level.widthF(), TrendModel::kDashOff / level.widthF()});
     level.setCapStyle(Qt::FlatCap);
     QPen best(t.verdigris, 1.2);
     best.setDashPattern({8.0, 3.0});
@@ -155,7 +155,7 @@ void TrendPlot::paintBest(QCPPainter& painter) const
 
 void TrendPlot::paintNow(QCPPainter& painter) const
 {
-    if (m_model.isEmpty() || std::isnan(m_model.thd().back().y())) {
+    if (m_model.thd().empty() || std::isnan(m_model.thd().back().y())) {
         return;
     }
     const QPointF last = m_model.thd().back();

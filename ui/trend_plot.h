@@ -28,9 +28,9 @@ private:
 
     TrendModel m_model;
     double m_spanS = 0.0;
-    QCPGraph* m_thd;
+    QCPGraph* m_level; // drawn in this order
     QCPGraph* m_thdn;
-    QCPGraph* m_level;
+    QCPGraph* m_thd;
 };
 
 } // namespace sinewright::ui

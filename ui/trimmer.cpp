@@ -58,7 +58,7 @@ Trimmer::Trimmer(QWidget* parent)
     addKey(tr("Trimmer: to its highest"), Qt::Key_End, kEnd);
 }
 
-void Trimmer::addKey(const QString& text, QKeySequence key, int steps)
+void Trimmer::addKey(const QString& text, const QKeySequence& key, int steps)
 {
     auto* action = new QAction(text, this);
     action->setShortcut(key);
@@ -181,7 +181,10 @@ void Trimmer::paintRuler(QPainter& painter) const
     painter.drawLine(QPointF(pixelOf(low), kRulerY + 0.5), QPointF(pixelOf(high), kRulerY + 0.5));
     painter.setFont(figureFont(kTypeSize));
     const QFontMetricsF metrics(painter.font());
-    for (double tick = std::ceil(low / kTickOhm) * kTickOhm; tick <= high; tick += kTickOhm) {
+    const int first = static_cast<int>(std::ceil(low / kTickOhm));
+    const int last = static_cast<int>(std::floor(high / kTickOhm));
+    for (int index = first; index <= last; ++index) {
+        const double tick = index * kTickOhm;
         const bool isNumbered = std::fmod(tick, kNumberOhm) == 0.0;
         const double x = std::round(pixelOf(tick)) + 0.5;
         painter.setPen(hair);

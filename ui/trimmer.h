@@ -40,7 +40,7 @@ protected:
     void wheelEvent(QWheelEvent* event) override;
 
 private:
-    void addKey(const QString& text, QKeySequence key, int steps);
+    void addKey(const QString& text, const QKeySequence& key, int steps);
     void turnBy(int steps);
     void turnTo(int value);
     [[nodiscard]] double pixelOf(double ohm) const;

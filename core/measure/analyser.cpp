@@ -23,8 +23,7 @@ constexpr double kLowestToneHz = 10.0;
 
 constexpr int kSpectrumTerms = 7; ///< sidelobes of -180 dB
 constexpr std::size_t kSpectrumPoints = 16384;
-constexpr double kLongSpectrumAboveHz =
-    64000.0; ///< rate from which the spectrum takes twice the points
+constexpr double kShortSpectrumRateHz = 50000.0; ///< twice the points for each doubling above
 
 std::size_t samplesIn(double seconds, SampleRate rate)
 {
@@ -33,7 +32,11 @@ std::size_t samplesIn(double seconds, SampleRate rate)
 
 std::size_t spectrumPoints(SampleRate rate)
 {
-    return rate.hz < kLongSpectrumAboveHz ? kSpectrumPoints : 2 * kSpectrumPoints;
+    std::size_t points = kSpectrumPoints;
+    for (double hz = kShortSpectrumRateHz; hz < rate.hz; hz *= 2.0) {
+        points *= 2;
+    }
+    return points;
 }
 
 bool isUsable(const Reading& reading)
@@ -55,7 +58,9 @@ public:
         , m_fullLength(samplesIn(config.fullLengthS, config.rate))
         , m_hopsAFull(std::max<std::size_t>(1, samplesIn(config.fullEveryS, config.rate) / m_hop))
         , m_history(std::max({m_longestQuick, m_fullLength, spectrumPoints(config.rate)}))
-        , m_spectrum(minimumSidelobeWindow(kSpectrumTerms), spectrumPoints(config.rate))
+        , m_spectrum(minimumSidelobeWindow(kSpectrumTerms),
+                     spectrumPoints(config.rate),
+                     Spectrum::Dc::TakeOut)
         , m_wantedQuick(m_quickLength)
     {
         assert(config.rate.hz > 0.0);

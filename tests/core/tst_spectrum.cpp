@@ -18,6 +18,7 @@ class TestSpectrum : public QObject
 private slots:
     void fullScaleSine_readsHalfOnItsBin();
     void flatTop_holdsLevelBetweenBins();
+    void dcTakenOut_leavesTheLowestBinsToTheTone();
     void whiteNoise_sumsToItsPower();
     void goodLength_isSmoothAndClose();
 };
@@ -44,6 +45,27 @@ void TestSpectrum::flatTop_holdsLevelBetweenBins()
             tests::tone({.rateHz = 4096.0, .frequencyHz = 1000.0 + offset, .amplitude = 0.1}, 4096);
         const double level = core::dbfsFromRms(std::sqrt(spectrum.powerFs2(sine)[1000]));
         QCOMPARE_LE(std::abs(level + 20.0), 0.003);
+    }
+}
+
+void TestSpectrum::dcTakenOut_leavesTheLowestBinsToTheTone()
+{
+    constexpr std::size_t kCount = 4096;
+    constexpr double kBin =
+        100.37; // no whole number of periods, so that the plain mean is not zero
+    std::vector<double> samples(kCount);
+    for (std::size_t i = 0; i < kCount; ++i) {
+        const double turns = kBin * static_cast<double>(i) / static_cast<double>(kCount);
+        samples[i] = 0.1 + 0.5 * std::sin(2.0 * std::numbers::pi * turns);
+    }
+    core::Spectrum keeping(core::minimumSidelobeWindow(7), kCount);
+    core::Spectrum without(core::minimumSidelobeWindow(7), kCount, core::Spectrum::Dc::TakeOut);
+    // DC keeps its lobe of seven bins: 0.01 times 2 at bin 0, still far above the sidelobes at bin 3.
+    QCOMPARE_GE(keeping.powerFs2(samples)[3], 1e-6);
+    // What is left are sidelobes 180 dB below the tone's 0.125 (Albrecht 2001, from memory): of the tone and of its
+    // image at minus its frequency, each once by itself and once through the mean, so four amplitudes at the most.
+    for (std::size_t bin = 0; bin < 10; ++bin) {
+        QCOMPARE_LE(without.powerFs2(samples)[bin], 16.0 * 0.125 * 1e-18);
     }
 }
 

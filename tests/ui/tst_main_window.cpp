@@ -1,4 +1,5 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
+#include "ui/advice_label.h"
 #include "ui/arms_length_view.h"
 #include "ui/main_window.h"
 #include "ui/plot.h"
@@ -239,6 +240,10 @@ private slots:
         QTRY_VERIFY(great->figure().value.startsWith(u"0."_s));
         QTRY_COMPARE_LE(std::abs(great->digitHeight() - bench.window.height() / 3.0),
                         4.0); // whole pixels of type
+        // The sentence is as large as it can be in one line.
+        const auto* view = great->parentWidget();
+        const auto* sentence = view->findChild<AdviceLabel*>(u"advice"_s);
+        QTRY_COMPARE_GE(sentence->typeSize(), bench.window.height() / 30);
         QVERIFY(!bench.part<QWidget>(u"figures"_s)->isVisible());
         QVERIFY(!bench.part<QWidget>(u"rail"_s)->isVisible());
         QTest::keyClick(&bench.window, Qt::Key_Escape);

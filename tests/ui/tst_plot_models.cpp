@@ -100,6 +100,7 @@ private slots:
         QCOMPARE(end, 0.5);
         QCOMPARE(symmetricEnd(0.25, end), end);
         QCOMPARE(symmetricEnd(0.01, end), 0.02);
+        QCOMPARE(symmetricEnd(1.0, 5.0), 2.0); // one step too wide is already hard to read
     }
 
     void columns_keepExtremesAndHoles()
@@ -113,6 +114,38 @@ private slots:
         QVERIFY(std::isnan(reduced[2].y()));
         QCOMPARE(reduced[3], QPointF(2.2, 3.0));
         QCOMPARE(reduced[4], QPointF(2.3, 3.5));
+    }
+
+    void dashes_partAFlatLineAndLeaveAStepWhole()
+    {
+        std::vector<QPointF> points;
+        for (int i = 0; i < 20; ++i) {
+            points.emplace_back(i + 0.5, i < 12 ? 1.0 : 5.0);
+        }
+        const std::vector<QPointF> line = dashed(points, 1.0, 4, 3, 0.5);
+        const auto isIn = [&line](const QPointF& point) {
+            return std::find(line.begin(), line.end(), point) != line.end();
+        };
+        QVERIFY(isIn(points[3]));
+        QVERIFY(!isIn(points[5])); // columns 4 to 6 are a gap
+        QVERIFY(isIn(points[11])); // 11 to 13 would be one, but the line steps from here
+        QVERIFY(isIn(points[12]));
+        QVERIFY(!isIn(points[13]));
+        QVERIFY(isIn(points[14]));
+    }
+
+    void trendWithoutAFigure_isEmpty()
+    {
+        tests::FakeBench bench;
+        TrendModel model;
+        model.setColumns(400);
+        model.setFrame(bench.nextWithoutTone());
+        QVERIFY(model.isEmpty());
+        model.setFrame(bench.next(2.5));
+        QVERIFY(!model.isEmpty());
+        QCOMPARE(model.spanS(), TrendModel::kShortSpanS);
+        model.setFrame(bench.trimFor(70.0));
+        QCOMPARE(model.spanS(), core::Trend::kSpanS);
     }
 
     void spectrum_keepsEveryLineHoweverManyBinsAColumnHas()

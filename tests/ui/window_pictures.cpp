@@ -150,6 +150,7 @@ void shootViews(Studio& studio, const std::shared_ptr<const core::Frame>& frame)
             }
         }
         studio.press(Qt::Key_F11);
+        QTest::qWait(100);
         studio.window().resize(1280, 800);
         studio.shoot(u"arms-length-"_s + name);
         studio.press(Qt::Key_F11);
