@@ -44,7 +44,7 @@ private:
         values.measure.harmonicCount = 5;
         values.measure.weighting = core::Weighting::Itu468;
         values.measure.fullScaleVrms = 1.0 / 3.0;
-        values.pictureFolder = u"/tmp/a, b/\u00FC"_s;
+        values.pictureFolder = u"/home/a, b/\u00FC"_s;
         return values;
     }
 
@@ -199,7 +199,7 @@ private slots:
         // A path below a file cannot be made by anybody, root included.
         writeText("x");
         Settings settings(file() + u"/below/settings.ini"_s);
-        settings.setPictureFolder(u"/tmp"_s);
+        settings.setPictureFolder(u"/somewhere"_s);
         QVERIFY(!settings.write());
     }
 
