@@ -20,13 +20,14 @@ enum class ErrorCode {
 };
 
 /// A foreseeable failure.
-struct Error {
+struct Error
+{
     ErrorCode code = ErrorCode::InvalidArgument;
     std::string detail; ///< one line of English: what, which file or device, why, and what to try
 };
 
 /// Either a value or the reason why there is none. Nothing in this program throws.
-template<typename T>
+template <typename T>
 using Result = tl::expected<T, Error>;
 
 /// Shorthand for `return failure(code, "...")` in a function that returns a Result.

@@ -6,13 +6,15 @@
 namespace sinewright::core {
 
 /// A frequency. Explicit, so that a frequency is never taken for a level or a rate.
-struct Hertz {
+struct Hertz
+{
     double value = 0.0;
     friend constexpr auto operator<=>(const Hertz&, const Hertz&) = default;
 };
 
 /// Frames per second of a stream. Any positive value; audio interfaces give 44100 to 192000.
-struct SampleRate {
+struct SampleRate
+{
     double hz = 0.0;
     [[nodiscard]] constexpr Hertz nyquist() const { return Hertz{hz / 2.0}; }
     friend constexpr auto operator<=>(const SampleRate&, const SampleRate&) = default;

@@ -2,7 +2,8 @@
 # SPDX-License-Identifier: GPL-3.0-or-later
 # Installs what is missing, builds everything with warnings as errors, and passes all tests.
 #   BUILD_DIR=...   build folder (default: build)
-#   SKIP_CHECKS=1   only build and run the plain tests: no formatter, linter or sanitizers
+#   SKIP_CHECKS=1   only build and run the tests: no formatter and no linter
+# The sanitizer builds take longer than all of this: see tests/sanitize.sh.
 set -euo pipefail
 cd "$(dirname "$0")/.."
 . app/build.sh
@@ -26,10 +27,5 @@ if [ -z "${SKIP_CHECKS:-}" ]; then
 
     step "lint"
     tests/lint.sh "$build_dir"
-
-    step "sanitizers: address and undefined"
-    tests/sanitize.sh address "$build_dir-address"
-    step "sanitizers: thread"
-    tests/sanitize.sh thread "$build_dir-thread"
 fi
 step "done"

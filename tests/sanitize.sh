@@ -1,6 +1,6 @@
 #!/usr/bin/env bash
 # SPDX-License-Identifier: GPL-3.0-or-later
-# Builds and runs the tests that carry the risk under a sanitizer.
+# Builds and runs the tests that carry the risk under a sanitizer; takes some ten minutes on two cores.
 #   tests/sanitize.sh address|thread BUILD_DIR
 set -euo pipefail
 cd "$(dirname "$0")/.."

@@ -32,11 +32,8 @@ std::size_t samplesIn(double seconds, SampleRate rate)
 
 std::size_t spectrumPoints(SampleRate rate)
 {
-    std::size_t points = kSpectrumPoints;
-    for (double hz = kShortSpectrumRateHz; hz < rate.hz; hz *= 2.0) {
-        points *= 2;
-    }
-    return points;
+    const double doublings = std::ceil(std::log2(rate.hz / kShortSpectrumRateHz));
+    return kSpectrumPoints << static_cast<unsigned>(std::max(0.0, doublings));
 }
 
 bool isUsable(const Reading& reading)
