@@ -41,6 +41,7 @@ public:
     explicit ArmsLengthView(QWidget* parent = nullptr);
 
     void showFrame(const std::shared_ptr<const core::Frame>& frame) override;
+    void hurry() override { m_sinceShown.invalidate(); }
     void setTheme(const Theme& theme) override;
     [[nodiscard]] QList<Plot*> plots() const override;
     void setAdvice(const QString& sentence, bool isAlert);

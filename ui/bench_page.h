@@ -26,6 +26,8 @@ public:
     {
         static_cast<void>(frame);
     }
+    /// The next frame renews even the figures that otherwise change a few times a second, for a picture is to be taken.
+    virtual void hurry() {}
     virtual void showBench(const BenchState& state) { static_cast<void>(state); }
     virtual void setTheme(const Theme& theme) { static_cast<void>(theme); }
     /// The plots on it, for pictures and for the pace of drawing.

@@ -39,6 +39,7 @@ public:
     void setTheme(const Theme& theme);
     /// Digits change a few times a second at the most, however many frames come.
     void setFrame(const std::shared_ptr<const core::Frame>& frame);
+    void hurry() { m_sinceShown.invalidate(); } ///< as BenchPage::hurry()
     /// The source is gone: the figures are the last ones, and say so.
     void setStale(bool isStale);
     [[nodiscard]] const std::vector<Block>& blocks() const { return m_blocks; }

@@ -17,6 +17,7 @@ class WarmUpPage final : public BenchPage
 public:
     explicit WarmUpPage(QWidget* parent = nullptr);
     void showFrame(const std::shared_ptr<const core::Frame>& frame) override;
+    void hurry() override { m_sinceShown.invalidate(); }
 
 private:
     QLabel* m_frequency;

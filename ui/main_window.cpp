@@ -183,6 +183,8 @@ void MainWindow::Impl::toggleSpectrumUnit()
 
 void MainWindow::Impl::savePage()
 {
+    m_parts.page()->hurry();
+    m_display.showNow();
     if (m_parts.isAtArmsLength()) {
         emit m_window.pictureWanted(
             {m_parts.page(), u"arms-length"_s, m_parts.page()->accessibleName()});

@@ -55,6 +55,11 @@ void TrimPage::showFrame(const std::shared_ptr<const core::Frame>& frame)
     m_figures->setFrame(frame);
 }
 
+void TrimPage::hurry()
+{
+    m_figures->hurry();
+}
+
 void TrimPage::showBench(const BenchState& state)
 {
     const bool isDemo = state.source.kind == SourceKind::Demo && state.trimmerOhm.has_value();

@@ -21,6 +21,7 @@ public:
     explicit TrimPage(QWidget* parent = nullptr);
 
     void showFrame(const std::shared_ptr<const core::Frame>& frame) override;
+    void hurry() override;
     void showBench(const BenchState& state) override;
     void setTheme(const Theme& theme) override;
     [[nodiscard]] QList<Plot*> plots() const override;

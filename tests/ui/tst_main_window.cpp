@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "ui/advice_label.h"
 #include "ui/arms_length_view.h"
+#include "ui/figures_column.h"
 #include "ui/main_window.h"
 #include "ui/plot.h"
 #include "ui/trimmer.h"
@@ -77,6 +78,17 @@ struct Bench
         return window.findChild<Type*>(name);
     }
 };
+
+/// What stands under "Level".
+QString levelOf(const FiguresColumn& column)
+{
+    for (const FiguresColumn::Block& block : column.blocks()) {
+        if (block.label == MainWindow::tr("Level")) {
+            return joined(block.figure);
+        }
+    }
+    return {};
+}
 
 /// Lets so much time go by: to see that something does not happen there is no other way.
 void letPass(int ms)
@@ -315,6 +327,24 @@ private slots:
         QCOMPARE(wanted.count(), 2);
         QCOMPARE(wanted.at(1).at(0).value<PictureRequest>().subjectName, u"trim"_s);
         QCOMPARE(bench.window.viewSettings().page, Page::Trim);
+    }
+
+    void pictureOfPage_showsTheFrameOfItsCaption()
+    {
+        Bench bench;
+        QVERIFY(bench.open());
+        QVERIFY(bench.give(bench.fake.next(1.5)));
+        // Digits are not renewed for a new frame right away, but they are for a picture.
+        QVERIFY(bench.give(bench.fake.next(2.5)));
+        FiguresColumn expected;
+        expected.setFrame(bench.frame);
+        const auto* column = bench.window.findChild<FiguresColumn*>();
+        QString pictured;
+        connect(
+            &bench.window, &MainWindow::pictureWanted, this, [&] { pictured = levelOf(*column); });
+        QTest::keyClick(&bench.window, Qt::Key_P);
+        QCOMPARE(bench.window.shownFrame(), bench.frame);
+        QCOMPARE(pictured, levelOf(expected));
     }
 
     void hiddenWindow_neitherPollsNorDraws()
