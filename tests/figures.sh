@@ -16,7 +16,7 @@ missed=0
 figures_of() {
     local output status=0
     output=$("$@" 2>&1) || status=$?
-    grep -oP '(?<=^|\) )[^|]+( \| [^|]+){2} \| (met|missed)$' <<<"$output" | sed 's/^QINFO *: *//' || true
+    grep -E '^[^|]+( \| [^|]+){2} \| (met|missed)$' <<<"$output" | sed -E 's/^QINFO +: [^()]*\([^)]*\) //' || true
     if [ "$status" != 0 ]; then
         grep -q ' | missed$' <<<"$output" || printf '%s | failed (exit %s) | passes | missed\n' "$(basename "$1")" "$status"
         missed=1
