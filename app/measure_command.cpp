@@ -60,7 +60,7 @@ tl::expected<void, Outcome> checkRequest(const MeasureOptions& options, core::Sa
         return refused(ExitStatus::WrongUsage,
                        "--band begins above half the sample rate (" +
                            QString::number(rate.nyquist().value).toStdString() +
-                           " Hz), where there is nothing");
+                           " Hz), where there is nothing: begin lower");
     }
     return {};
 }

@@ -22,7 +22,12 @@ OptionReader::OptionReader(const QString& helpHint,
     if (!understood) {
         const QStringList unknown = m_parser.unknownOptionNames();
         if (unknown.isEmpty()) {
-            complain(m_parser.errorText().remove(u'\n'));
+            // Qt ends it like a sentence of its own; here another part follows.
+            QString text = m_parser.errorText().remove(u'\n');
+            while (text.endsWith(u'.')) {
+                text.chop(1);
+            }
+            complain(text.left(1).toLower() + text.mid(1));
         } else {
             const QString dashes = unknown.first().size() > 1 ? u"--"_s : u"-"_s;
             complain(u"unknown option %1%2"_s.arg(dashes, unknown.first()));

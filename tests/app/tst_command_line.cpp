@@ -306,6 +306,7 @@ private slots:
         row("measure", "wants a source");
         row("measure a.wav b.wav", "b.wav");
         row("measure a.wav --nonsense", "unknown option --nonsense");
+        row("measure a.wav --start", "missing value after '--start'; try");
         row("measure a.wav --json=yes", "json");
         row("measure a.wav --seconds -1", "--seconds -1");
         row("measure a.wav --seconds inf", "--seconds inf");
