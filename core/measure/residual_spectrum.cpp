@@ -17,6 +17,11 @@ namespace {
 constexpr double kPi = std::numbers::pi;
 constexpr double kTaperShare = 1.0 / 16.0;
 
+/// N sum w^4 / (sum w^2)^2 of the taper: sin^4 has the mean 3 / 8 over an edge, sin^8 has 35 / 128.
+constexpr double kTaperMean2 = 1.0 - 2.0 * kTaperShare * (1.0 - 3.0 / 8.0);
+constexpr double kTaperMean4 = 1.0 - 2.0 * kTaperShare * (1.0 - 35.0 / 128.0);
+constexpr double kTaperSpread = kTaperMean4 / (kTaperMean2 * kTaperMean2);
+
 constexpr std::size_t kLocalIndices = 64;   ///< wanted on both sides together for a local density
 constexpr std::ptrdiff_t kLocalReach = 512; ///< how far they are looked for on each side
 
@@ -128,10 +133,10 @@ double ResidualSpectrum::medianPowerFs2(double lowBins, double highBins) const
     return end > first ? meanFromMedian(m_powers.subspan(first, end - first)) * m_powerScale : 0.0;
 }
 
-double ResidualSpectrum::bandPowerFs2(double lowBins,
-                                      double highBins,
-                                      Weighting weighting,
-                                      double binHz) const
+ResidualSpectrum::BandPower ResidualSpectrum::bandPower(double lowBins,
+                                                        double highBins,
+                                                        Weighting weighting,
+                                                        double binHz) const
 {
     const auto first = static_cast<std::size_t>(std::max(1.0, std::ceil(lowBins / m_binsPerIndex)));
     const auto last = static_cast<std::size_t>(
@@ -141,22 +146,28 @@ double ResidualSpectrum::bandPowerFs2(double lowBins,
         return factor * factor;
     };
     if (last < first) {
-        return 0.0;
+        return {};
     }
     double sum = 0.0;
+    double squares = 0.0;
     if (weighting == Weighting::None) {
         const auto inside = m_powers.subspan(first, last - first + 1);
-        sum = Eigen::Map<const Eigen::ArrayXd>(inside.data(),
-                                               static_cast<Eigen::Index>(inside.size()))
-                  .sum() *
-              m_powerScale;
+        const Eigen::Map<const Eigen::ArrayXd> powers(inside.data(),
+                                                      static_cast<Eigen::Index>(inside.size()));
+        sum = powers.sum() * m_powerScale;
+        squares = powers.square().sum() * m_powerScale * m_powerScale;
         sum -= last + 1 == size() ? powerFs2(last) : 0.0; // half the rate stands for itself alone
     } else {
         for (std::size_t index = first; index <= last; ++index) {
-            sum += powerFs2(index) * factor2(index);
+            const double power = powerFs2(index) * factor2(index);
+            sum += power;
+            squares += power * power;
         }
     }
     // What little the fit left in the gaps goes out again, the density beside them comes in.
+    double fillVariance = 0.0;
+    double together = 0.0; // standard deviation of the fillings that scatter as one
+    double lineBefore = -static_cast<double>(m_samples);
     std::size_t next = first;
     for (const double line : m_lines) {
         const double from = std::ceil((line - m_gapBins) / m_binsPerIndex);
@@ -166,13 +177,31 @@ double ResidualSpectrum::bandPowerFs2(double lowBins,
         if (gapFirst > last || gapLast < gapFirst) {
             continue;
         }
-        const double fill = localPowerFs2(line);
+        const auto density = localDensity(line, 0.0, static_cast<double>(m_samples));
+        double filled = 0.0;
         for (std::size_t index = gapFirst; index <= std::min(gapLast, last); ++index) {
-            sum += (fill - powerFs2(index)) * factor2(index);
+            const double factor = factor2(index);
+            const double out = powerFs2(index) * factor;
+            const double in = density.powerFs2 * factor;
+            sum += in - out;
+            // A filling moves with the sum, for the powers it comes from are in the sum as well: with n exponential
+            // powers of density S the covariance of their sum and any estimate of scale d is d S (Basu's theorem).
+            squares += 4.0 * in * in - out * out;
+            filled += in;
+        }
+        if (density.independent > 0.0) {
+            // Fillings of lines that share their neighbours scatter together, others on their own.
+            const double fillStd = filled / std::sqrt(density.independent);
+            const bool isShared = line - lineBefore < kLocalIndices * m_binsPerIndex;
+            const double togetherBefore = isShared ? together : 0.0;
+            together = togetherBefore + fillStd;
+            fillVariance += together * together - togetherBefore * togetherBefore;
+            lineBefore = line;
         }
         next = gapLast + 1;
     }
-    return std::max(sum, 0.0);
+    const double variance = std::max(squares, 0.0) / 2.0 * kTaperSpread / m_binsPerIndex;
+    return {std::max(sum, 0.0), variance + fillVariance};
 }
 
 double ResidualSpectrum::largestPowerFs2() const

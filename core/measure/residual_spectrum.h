@@ -70,11 +70,22 @@ public:
     /// Median of the in-band power an index, brought to the mean of noise.
     [[nodiscard]] double medianPowerFs2(double lowBins, double highBins) const;
 
+    /// Power of noise in a band and how far another stretch of the same noise would differ.
+    struct BandPower
+    {
+        double powerFs2 = 0.0;    ///< mean square
+        double varianceFs4 = 0.0; ///< of powerFs2
+    };
+
     /// Mean square in a band, the gaps under the lines filled with the density beside them.
     ///
+    /// An index's power is exponentially spread about its density S, so that half its mean square is S^2; the variance
+    /// is the sum of S^2 over independent bins times the taper's N sum w^4 / (sum w^2)^2, and what the fillings' own
+    /// scatter adds (Welch 1967, from memory, for a single stretch).
+    ///
     /// @param weighting  applied to each frequency; `binHz` is the width of a bin.
-    [[nodiscard]] double
-    bandPowerFs2(double lowBins, double highBins, Weighting weighting, double binHz) const;
+    [[nodiscard]] BandPower
+    bandPower(double lowBins, double highBins, Weighting weighting, double binHz) const;
 
     /// Amplitude and place of a line near an index, by a raised-cosine window and the ratio of two neighbours.
     struct Line
