@@ -72,6 +72,22 @@ core::Result<QString> savePicture(const QImage& image,
     return tl::unexpected(writeError(folder, u"too many pictures in one second"_s));
 }
 
+core::Result<void> checkPicturePlace(const QString& path)
+{
+    const QFileInfo target(path);
+    const QFileInfo folder(target.absolutePath());
+    if (target.isDir()) {
+        return tl::unexpected(writeError(path, u"it is a folder"_s));
+    }
+    if (!folder.isDir()) {
+        return tl::unexpected(writeError(path, u"its folder does not exist"_s));
+    }
+    if (!target.exists() && !folder.isWritable()) {
+        return tl::unexpected(writeError(path, u"its folder may not be written to"_s));
+    }
+    return {};
+}
+
 core::Result<void> writePicture(const QImage& image, const QString& path)
 {
     const QByteArray bytes = pngOf(image);

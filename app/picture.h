@@ -23,6 +23,10 @@ namespace sinewright::app {
                                                 const QDateTime& when,
                                                 const QString& subjectName);
 
+/// Whether a picture could be written under this name now, as far as its folder tells.
+/// @error WriteFailed
+[[nodiscard]] core::Result<void> checkPicturePlace(const QString& file);
+
 /// Saves as PNG under exactly this name, over what is there.
 /// @error WriteFailed
 [[nodiscard]] core::Result<void> writePicture(const QImage& image, const QString& file);

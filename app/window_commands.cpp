@@ -2,6 +2,7 @@
 #include "app/window_commands.h"
 
 #include "app/bench_session.h"
+#include "app/picture.h"
 #include "app/picture_run.h"
 #include "app/settings.h"
 #include "app/window_wiring.h"
@@ -53,6 +54,10 @@ Outcome runWindow(const WindowOptions& options, int& argc, char** argv)
 
 Outcome runPicture(const PictureOptions& options, int& argc, char** argv)
 {
+    // Said before the wait for what the picture shows, not after it.
+    if (const auto place = checkPicturePlace(options.file); !place) {
+        return complaint(ExitStatus::NotWritten, place.error().detail);
+    }
     const QTemporaryDir folder;
     if (!folder.isValid()) {
         return complaint(ExitStatus::NotWritten, folder.errorString().toStdString());
