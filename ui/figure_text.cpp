@@ -90,6 +90,23 @@ FigureText frequencyFigure(std::optional<double> hz, std::optional<double> stdHz
     return {numberText(*hz, decimals), u"Hz"_s};
 }
 
+FigureText frequencySpreadFigure(std::optional<double> stdHz)
+{
+    constexpr double kThousand = 1e3;
+    if (!stdHz || !std::isfinite(*stdHz) || *stdHz <= 0.0) {
+        return {kAbsent, u"Hz"_s};
+    }
+    double value = *stdHz;
+    QString unit = u"Hz"_s;
+    for (const QString& finer : {u"mHz"_s, u"µHz"_s}) {
+        if (value < 1.0) {
+            value *= kThousand;
+            unit = finer;
+        }
+    }
+    return {numberText(value, decimalsFor(value, 2)), unit};
+}
+
 FigureText voltFigure(std::optional<double> volts)
 {
     constexpr double kMilli = 1e-3;

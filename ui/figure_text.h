@@ -41,6 +41,9 @@ decibelFigure(std::optional<double> decibels, int decimals, const QString& unit)
 /// digits when no deviation is known.
 [[nodiscard]] FigureText frequencyFigure(std::optional<double> hz, std::optional<double> stdHz);
 
+/// One standard deviation of a frequency, two significant digits or all before the point, as Hz, mHz or µHz.
+[[nodiscard]] FigureText frequencySpreadFigure(std::optional<double> stdHz);
+
 /// Volts rms, four significant digits, as V or mV.
 [[nodiscard]] FigureText voltFigure(std::optional<double> volts);
 

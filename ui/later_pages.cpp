@@ -78,9 +78,10 @@ void WarmUpPage::showFrame(const std::shared_ptr<const core::Frame>& frame)
     setTextIfNew(*m_frequency,
                  joined(frequencyFigure(reading.frequencyHz, reading.frequencyStdHz)));
     setTextIfNew(*m_deviation,
-                 reading.frequencyStdHz ? tr("one standard deviation: %1 mHz")
-                                              .arg(numberText(*reading.frequencyStdHz * 1000.0, 2))
-                                        : QString());
+                 reading.frequencyStdHz
+                     ? tr("one standard deviation: %1")
+                           .arg(joined(frequencySpreadFigure(reading.frequencyStdHz)))
+                     : QString());
     setTextIfNew(*m_level,
                  joined(reading.levelVrms ? voltFigure(reading.levelVrms)
                                           : decibelFigure(reading.levelDbfs, 2, u"dBFS"_s)));

@@ -81,6 +81,16 @@ private slots:
         QCOMPARE(frequencyFigure(1189.2346, deviation).value, text);
     }
 
+    void frequencySpread_isNeverRoundedToNothing()
+    {
+        QCOMPARE(joined(frequencySpreadFigure(0.25)), u"250\u00A0mHz"_s);
+        QCOMPARE(joined(frequencySpreadFigure(1.23e-3)), u"1.2\u00A0mHz"_s);
+        QCOMPARE(joined(frequencySpreadFigure(1.234e-5)), u"12\u00A0\u00B5Hz"_s);
+        QCOMPARE(joined(frequencySpreadFigure(1.234e-8)), u"0.012\u00A0\u00B5Hz"_s);
+        QCOMPARE(frequencySpreadFigure(0.0).value, QString(kAbsent));
+        QCOMPARE(frequencySpreadFigure(std::nullopt).value, QString(kAbsent));
+    }
+
     void decibels_haveATrueMinusAndNoMinusZero()
     {
         QCOMPARE(decibelFigure(-84.04, 1, u"dBc"_s).value, u"\u221284.0"_s);
