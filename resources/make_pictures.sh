@@ -6,6 +6,7 @@ set -euo pipefail
 cd "$(dirname "$0")/.."
 build_dir=${BUILD_DIR:-build}
 stops=296,318,340,358,372,384,392,381,366,374,369,370
+mkdir -p resources/pictures
 runs=()
 for theme in paper dusk; do
     for size in 1280x800 1920x1080; do
