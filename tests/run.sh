@@ -3,7 +3,7 @@
 # Installs what is missing, builds everything with warnings as errors, and passes all tests.
 #   BUILD_DIR=...   build folder (default: build)
 #   SKIP_CHECKS=1   only build and run the tests: no formatter and no linter
-# The sanitizer builds take longer than all of this: see tests/sanitize.sh.
+# The sanitizer builds are apart, since each is a whole build of its own: see tests/sanitize.sh.
 set -euo pipefail
 cd "$(dirname "$0")/.."
 . app/build.sh

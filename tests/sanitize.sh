@@ -1,6 +1,6 @@
 #!/usr/bin/env bash
 # SPDX-License-Identifier: GPL-3.0-or-later
-# Builds and runs the tests that carry the risk under a sanitizer; takes some ten minutes on two cores.
+# Builds and runs the tests that carry the risk under a sanitizer.
 #   tests/sanitize.sh address|thread BUILD_DIR
 set -euo pipefail
 cd "$(dirname "$0")/.."

@@ -12,7 +12,7 @@ namespace sinewright::core {
 ///
 /// @param frequencyHz  [Hz] >= 0.
 /// @source  A: IEC 61672-1:2013, Annex E, from memory; 468: Rec. ITU-R BS.468-4, Annex 1; rational form from public
-///          transcriptions.
+///          copies.
 [[nodiscard]] double weightingFactor(Weighting weighting, double frequencyHz);
 
 } // namespace sinewright::core
